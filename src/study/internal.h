@@ -1,0 +1,42 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * Private to the study storey: intervals, and the search for the edges of the window. */
+#ifndef MELTWRIGHT_STUDY_INTERNAL_H
+#define MELTWRIGHT_STUDY_INTERNAL_H
+
+#include "meltwright/study.h"
+
+/* Fills the interval fields of a result that has its pool. */
+void mw_intervals_at(const mw_plan *plan, bool outside, mw_result *result);
+
+/* Margins of one judged result, by a search of its own. */
+mw_status mw_margins_at(const mw_plan *plan, const mw_result *result, mw_margins *out);
+
+/* ---- edges along one factor ----
+ * A line holds tracks over rising values of power (or speed) with the other factor fixed. The edges of a (hatch, layer) on
+ * it are the values where the verdict enters or leaves nominal. */
+typedef enum mw_factor { MW_ALONG_POWER, MW_ALONG_SPEED } mw_factor;
+
+/* Values at which a line is laid out: powers of `MW_LINE_RATIO` from low / 5 to high * 5, and the n given values themselves.
+ * Absolute powers, so that a single setting and a grid look at the same places. Returns how many; call with out = NULL to count. */
+#define MW_LINE_RATIO 1.05
+#define MW_MARGIN_REACH 5.0
+size_t mw_line_values(const double *value, size_t n, double *out);
+
+typedef struct mw_line {
+    const mw_plan *plan;
+    mw_factor factor;
+    const mw_track *track; /* n tracks, rising along the factor */
+    size_t n;
+} mw_line;
+
+enum { MW_MOST_EDGES = 8 };
+typedef struct mw_edges {
+    size_t n;
+    double at[MW_MOST_EDGES]; /* rising */
+} mw_edges;
+mw_status mw_edges_on(const mw_line *line, double hatch_m, double layer_m, mw_edges *out);
+
+/* Percent from `value` down and up to the nearest edge; NaN beyond a factor of MW_MARGIN_REACH. */
+void mw_margin_from(const mw_edges *edges, double value, double *down_pct, double *up_pct);
+
+#endif

@@ -1,0 +1,177 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * A grid over power, speed, hatch and layer. Tracks are computed once a (power, speed), on all cores; edges of the window once a
+ * line of them; each cell is then a handful of closed forms. */
+#include <math.h>
+#include <stdlib.h>
+
+#ifdef _OPENMP
+#include <omp.h>
+#endif
+
+#include "study/internal.h"
+
+/* Everything a running sweep holds. hatch and layer are never empty here: a missing axis is one NaN or one 0. */
+typedef struct sweep {
+    const mw_plan *plan;
+    mw_grid grid;
+    int threads;
+    mw_track *track;                  /* n_power x n_speed, speed fastest */
+    mw_edges *along_power, *along_speed; /* [line][hatch][layer]; line = speed index, power index */
+} sweep;
+
+static mw_status check_axis(const char *name, const double *value, size_t n, mw_error *err)
+{
+    for (size_t i = 1; i < n; i++)
+        if (!(value[i] > value[i - 1]))
+            return mw_fail(err, MW_BAD_VALUE, NULL, 0, "the values of %s do not rise", name);
+    return MW_OK;
+}
+
+/* Both ends of every axis through the check of a setting; between them nothing worse can stand. */
+static mw_status check_grid(const mw_grid *g, mw_error *err)
+{
+    mw_status status = check_axis("power", g->power_W, g->n_power, err);
+    if (status == MW_OK)
+        status = check_axis("speed", g->speed_m_per_s, g->n_speed, err);
+    if (status == MW_OK)
+        status = check_axis("hatch", g->hatch_m, g->n_hatch, err);
+    if (status == MW_OK)
+        status = check_axis("layer", g->layer_m, g->n_layer, err);
+    if (status == MW_OK && (g->n_power == 0 || g->n_speed == 0 || g->n_hatch == 0 || g->n_layer == 0))
+        status = mw_fail(err, MW_BAD_VALUE, NULL, 0, "a grid needs at least one value of each factor");
+    for (int end = 0; end < 2 && status == MW_OK; end++) {
+        const mw_setting s = {g->power_W[end ? g->n_power - 1 : 0], g->speed_m_per_s[end ? g->n_speed - 1 : 0],
+                              g->hatch_m[end ? g->n_hatch - 1 : 0], g->layer_m[end ? g->n_layer - 1 : 0], g->d4sigma_m, g->preheat_K};
+        status = mw_setting_check(&s, err);
+    }
+    if (status != MW_OK)
+        return status;
+    const double tracks = (double)g->n_power * (double)g->n_speed, cells = tracks * (double)g->n_hatch * (double)g->n_layer;
+    if (cells > MW_MOST_CELLS)
+        return mw_fail(err, MW_TOO_LARGE, NULL, 0,
+                       "a grid of %zu x %zu x %zu x %zu = %.4g cells (about %.3g GB of table) is more than the %d allowed; "
+                       "use fewer values or split the ranges",
+                       g->n_power, g->n_speed, g->n_hatch, g->n_layer, cells, cells * 600e-9, MW_MOST_CELLS);
+    if (tracks > MW_MOST_TRACKS)
+        return mw_fail(err, MW_TOO_LARGE, NULL, 0, "%zu powers x %zu speeds = %.4g pools is more than the %d allowed; use fewer values",
+                       g->n_power, g->n_speed, tracks, MW_MOST_TRACKS);
+    return MW_OK;
+}
+
+static void compute_tracks(sweep *s)
+{
+    const mw_grid *g = &s->grid;
+    const long n = (long)(g->n_power * g->n_speed);
+#pragma omp parallel for schedule(dynamic, 16) num_threads(s->threads)
+    for (long i = 0; i < n; i++)
+        (void)mw_track_at(s->plan, g->power_W[(size_t)i / g->n_speed], g->speed_m_per_s[(size_t)i % g->n_speed], g->d4sigma_m, &s->track[i]);
+}
+
+/* Edges of all lines along one factor, for every hatch and layer. */
+static mw_status compute_edges(sweep *s, mw_factor factor, mw_edges *edges, mw_error *err)
+{
+    const mw_grid *g = &s->grid;
+    const bool power = factor == MW_ALONG_POWER;
+    const double *own = power ? g->power_W : g->speed_m_per_s, *other = power ? g->speed_m_per_s : g->power_W;
+    const size_t n_own = power ? g->n_power : g->n_speed, n_pairs = g->n_hatch * g->n_layer;
+    const long n_line = (long)(power ? g->n_speed : g->n_power);
+    const size_t n = mw_line_values(own, n_own, NULL);
+    double *at = malloc(n * sizeof *at);
+    mw_track *track = malloc(n * (size_t)s->threads * sizeof *track);
+    mw_status status = MW_OK;
+    if (at == NULL || track == NULL) {
+        status = mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory");
+        goto done;
+    }
+    (void)mw_line_values(own, n_own, at);
+    int failed = 0;
+#pragma omp parallel for schedule(dynamic, 1) num_threads(s->threads) reduction(| : failed)
+    for (long l = 0; l < n_line; l++) {
+#ifdef _OPENMP
+        mw_track *mine = track + n * (size_t)omp_get_thread_num();
+#else
+        mw_track *mine = track;
+#endif
+        for (size_t i = 0; i < n; i++)
+            (void)mw_track_at(s->plan, power ? at[i] : other[l], power ? other[l] : at[i], g->d4sigma_m, &mine[i]);
+        const mw_line line = {s->plan, factor, mine, n};
+        for (size_t p = 0; p < n_pairs; p++)
+            failed |= mw_edges_on(&line, g->hatch_m[p / g->n_layer], g->layer_m[p % g->n_layer],
+                                  &edges[(size_t)l * n_pairs + p]) != MW_OK;
+    }
+    if (failed)
+        status = mw_fail(err, MW_NO_CONVERGENCE, NULL, 0, "an edge of the window could not be found");
+done:
+    free(track);
+    free(at);
+    return status;
+}
+
+static mw_status write_cells(const sweep *s, mw_result_sink sink, void *to)
+{
+    const mw_grid *g = &s->grid;
+    const size_t n_pairs = g->n_hatch * g->n_layer;
+    for (size_t i = 0; i < g->n_power * g->n_speed; i++) {
+        const size_t ip = i / g->n_speed, iv = i % g->n_speed;
+        for (size_t p = 0; p < n_pairs; p++) {
+            mw_result r;
+            mw_result_at(s->plan, &s->track[i], g->hatch_m[p / g->n_layer], g->layer_m[p % g->n_layer], &r);
+            if (s->along_power != NULL && r.judged && r.judgement.verdict == MW_NOMINAL) {
+                mw_margin_from(&s->along_power[iv * n_pairs + p], g->power_W[ip], &r.margins.power_down_pct, &r.margins.power_up_pct);
+                mw_margin_from(&s->along_speed[ip * n_pairs + p], g->speed_m_per_s[iv], &r.margins.speed_down_pct, &r.margins.speed_up_pct);
+            } else if (s->along_power != NULL && r.judged) {
+                r.margins = (mw_margins){0, 0, 0, 0};
+            }
+            const mw_status status = sink(to, &r);
+            if (status != MW_OK)
+                return status;
+        }
+    }
+    return MW_OK;
+}
+
+mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, int threads, mw_result_sink sink, void *to, mw_error *err)
+{
+    static const double single_track = NAN, bare_plate = 0;
+    sweep s = {.plan = plan, .grid = *grid, .threads = threads};
+    if (s.grid.n_hatch == 0) {
+        s.grid.hatch_m = &single_track;
+        s.grid.n_hatch = 1;
+    }
+    if (s.grid.n_layer == 0) {
+        s.grid.layer_m = &bare_plate;
+        s.grid.n_layer = 1;
+    }
+#ifdef _OPENMP
+    if (threads <= 0)
+        s.threads = omp_get_num_procs();
+#endif
+    if (s.threads <= 0)
+        s.threads = 1;
+    mw_status status = check_grid(&s.grid, err);
+    if (status != MW_OK)
+        return status;
+    const size_t n_pairs = s.grid.n_hatch * s.grid.n_layer;
+    const bool margins = with_margins && grid->n_hatch > 0 && grid->n_layer > 0;
+    s.track = malloc(s.grid.n_power * s.grid.n_speed * sizeof *s.track);
+    if (margins) {
+        s.along_power = calloc(s.grid.n_speed * n_pairs, sizeof *s.along_power);
+        s.along_speed = calloc(s.grid.n_power * n_pairs, sizeof *s.along_speed);
+    }
+    if (s.track == NULL || (margins && (s.along_power == NULL || s.along_speed == NULL))) {
+        status = mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory");
+        goto done;
+    }
+    compute_tracks(&s);
+    if (margins)
+        status = compute_edges(&s, MW_ALONG_POWER, s.along_power, err);
+    if (status == MW_OK && margins)
+        status = compute_edges(&s, MW_ALONG_SPEED, s.along_speed, err);
+    if (status == MW_OK)
+        status = write_cells(&s, sink, to);
+done:
+    free(s.along_speed);
+    free(s.along_power);
+    free(s.track);
+    return status;
+}
