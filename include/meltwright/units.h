@@ -3,6 +3,7 @@
 #ifndef MELTWRIGHT_UNITS_H
 #define MELTWRIGHT_UNITS_H
 
+#include <stdbool.h>
 #include <stddef.h>
 
 #include "meltwright/status.h"
@@ -28,6 +29,9 @@ const char *mw_trade_unit(mw_quantity quantity);
 /* SI -> trade unit (a temperature: K -> C) and back. */
 double mw_to_trade(mw_quantity quantity, double si);
 double mw_from_trade(mw_quantity quantity, double trade);
+
+/* A plain decimal in the trade unit -> SI, rounded once, so that 913.7 mm/s is the double nearest to 0.9137. False: not a number. */
+bool mw_read_trade(mw_quantity quantity, const char *text, size_t n, double *si);
 
 /* One value with an optional suffix -> *si. `what` names it in the message ("--power"). On failure the message says
  * what was read and which suffixes are allowed. Errors: MW_BAD_VALUE. */

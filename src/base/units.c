@@ -61,21 +61,15 @@ double mw_from_trade(mw_quantity quantity, double trade)
     return (u->power < 0 ? trade / power_of_ten(-u->power) : trade * power_of_ten(u->power)) + u->offset;
 }
 
-double mw_to_trade(mw_quantity quantity, double si)
-{
-    const unit *u = &quantity_table[quantity].unit[0];
-    const double trade = u->power < 0 ? (si - u->offset) * power_of_ten(-u->power) : (si - u->offset) / power_of_ten(u->power);
-    /* 110 um must not come back as 110.00000000000001: prefer the round value when it stands for the same SI double. */
-    const double rounded = fabs(trade) < 1e6 ? nearbyint(trade * 1e9) / 1e9 : trade;
-    return mw_from_trade(quantity, rounded) == si ? rounded : trade;
-}
-
 enum { LONGEST_NUMBER = 64 };
 
 /* The decimal text[0..n-1] times 10^power, rounded once: 0.12mm, 120um and 1.2e-4m are the same double. */
 static bool read_scaled(const char *text, size_t n, int power, double *out)
 {
     char shifted[LONGEST_NUMBER + 16];
+    double ignored;
+    if (!mw_read_number(text, n, &ignored))
+        return false;
     size_t mantissa = 0;
     while (mantissa < n && text[mantissa] != 'e' && text[mantissa] != 'E')
         mantissa++;
@@ -87,6 +81,32 @@ static bool read_scaled(const char *text, size_t n, int power, double *out)
     memcpy(shifted, text, mantissa);
     const int more = snprintf(shifted + mantissa, sizeof shifted - mantissa, "e%d", (int)exponent + power);
     return mw_read_number(shifted, mantissa + (size_t)more, out);
+}
+
+bool mw_read_trade(mw_quantity quantity, const char *text, size_t n, double *si)
+{
+    const unit *u = &quantity_table[quantity].unit[0];
+    double value;
+    if (n > LONGEST_NUMBER || !read_scaled(text, n, u->power, &value))
+        return false;
+    *si = value + u->offset;
+    return true;
+}
+
+double mw_to_trade(mw_quantity quantity, double si)
+{
+    const unit *u = &quantity_table[quantity].unit[0];
+    const double trade = u->power < 0 ? (si - u->offset) * power_of_ten(-u->power) : (si - u->offset) / power_of_ten(u->power);
+    /* 110 um must not come back as 110.00000000000001: prefer the round value when it reads back as the same SI double. */
+    if (!(fabs(trade) < 1e6))
+        return trade;
+    const double rounded = nearbyint(trade * 1e9) / 1e9;
+    if (mw_from_trade(quantity, rounded) == si)
+        return rounded;
+    char text[MW_NUMBER_SIZE];
+    double back;
+    const size_t n = mw_print_number(text, rounded);
+    return n < sizeof text && fabs(rounded - trade) <= 4e-16 * fabs(trade) && mw_read_trade(quantity, text, n, &back) && back == si ? rounded : trade;
 }
 
 static const unit *find_unit(mw_quantity quantity, const char *suffix, size_t n)

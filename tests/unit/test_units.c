@@ -42,6 +42,18 @@ static void spellings_of_one_value_agree_to_the_bit(void **state)
         assert_true(mw_from_trade(MW_LENGTH, um) == x);
     }
     CHECK_NEAR(mw_to_trade(MW_TEMPERATURE, 353.15), 80, 1e-12);
+    for (int tenth = 1; tenth < 20000; tenth++) {
+        char a[32];
+        const int n = snprintf(a, sizeof a, "%.1f", tenth / 10.0);
+        double typed, cell;
+        assert_int_equal(mw_parse_quantity(MW_SPEED, "--x", a, &typed, NULL), MW_OK);
+        assert_true(mw_read_trade(MW_SPEED, a, (size_t)n, &cell) && cell == typed);
+        assert_true(mw_to_trade(MW_SPEED, typed) == tenth / 10.0);
+    }
+    double keep = 1;
+    assert_false(mw_read_trade(MW_SPEED, "0,8", 3, &keep));
+    assert_false(mw_read_trade(MW_SPEED, "", 0, &keep));
+    assert_true(keep == 1);
 }
 
 static void refusals_say_what_is_allowed(void **state)
