@@ -7,32 +7,82 @@
 
 #include <math.h>
 
-enum { SURFACE_NODES = 72, BELOW_NODES = 112 };
+#include "model/wide.h"
+
+enum { LANES = 8, SURFACE_NODES = 72, BELOW_NODES = 112 }; /* multiples of LANES */
 static const double CUT = 37; /* exp(-37) = 8.5e-17 */
 
-/* Weighted sums over nodes w^2 with weight = jacobian/(1+w^2), relative to the floor of the exponent. */
-typedef struct sums {
-    double one, g, gg, s, t, gt;
-} sums;
+/* Sums over nodes with weight jacobian/(1+w^2), relative to the floor of the exponent, in LANES strands: node i goes to strand
+ * i mod LANES, so the order of additions is the same whatever the width of the machine's vectors. */
+typedef struct strands {
+    double one[LANES], g[LANES], gg[LANES], s[LANES], t[LANES], gt[LANES];
+} strands;
 
-static void take(sums *a, double weight, double g, double over_s, double t)
+static double total(const double x[LANES])
 {
-    a->one += weight;
-    a->g += weight * g;
-    a->gg += weight * g * g;
-    a->s += weight * over_s;
-    a->t += weight * t;
-    a->gt += weight * g * t;
+    return ((x[0] + x[4]) + (x[2] + x[6])) + ((x[1] + x[5]) + (x[3] + x[7]));
 }
 
-static void finish(const sums *a, double step, double floor_exponent, mw_moments *out)
+static void finish(const strands *a, double step, double floor_exponent, mw_moments *out)
 {
-    out->log_i = log(a->one * step) - floor_exponent;
-    out->g = a->g / a->one;
-    out->gg = a->gg / a->one;
-    out->s = a->s / a->one;
-    out->t = a->t / a->one;
-    out->gt = a->gt / a->one;
+    const double one = total(a->one);
+    out->log_i = log(one * step) - floor_exponent;
+    out->g = total(a->g) / one;
+    out->gg = total(a->gg) / one;
+    out->s = total(a->s) / one;
+    out->t = total(a->t) / one;
+    out->gt = total(a->gt) / one;
+}
+
+/* e^(from + i h) for the first LANES nodes, and e^(LANES h): the others follow by multiplication. */
+static double first_nodes(double from, double step, double e[LANES])
+{
+    const double grow = exp(step);
+    e[0] = exp(from);
+    for (int i = 1; i < LANES; i++)
+        e[i] = e[i - 1] * grow;
+    const double grow2 = grow * grow, grow4 = grow2 * grow2;
+    return grow4 * grow4;
+}
+
+/* w = sinh u on the surface. `first` weighs node 0: one half where the interval starts at u = 0, since the integrand is even in u. */
+MW_WIDE static void surface_nodes(double x, double y2, double p, double floor_exponent, double first, double e[LANES], double grow, strands *a)
+{
+    for (int i = 0; i < SURFACE_NODES; i += LANES) {
+#pragma omp simd
+        for (int l = 0; l < LANES; l++) {
+            const double inv = 1 / e[l], cosh_u = 0.5 * (e[l] + inv), sinh_u = 0.5 * (e[l] - inv);
+            const double w2 = sinh_u * sinh_u, s = 1 / (cosh_u * cosh_u), reach = x + p * w2, g = reach * s;
+            const double weight = exp(floor_exponent - 0.5 * (reach * reach + y2) * s) / cosh_u * (i + l == 0 ? first : 1);
+            a->one[l] += weight;
+            a->g[l] += weight * g;
+            a->gg[l] += weight * g * g;
+            a->s[l] += weight * s;
+            a->gt[l] += weight * g * s;
+            e[l] *= grow;
+        }
+    }
+    for (int l = 0; l < LANES; l++)
+        a->t[l] = a->s[l];
+}
+
+/* w = e^u below it. */
+MW_WIDE static void below_nodes(double x, double z2, double p, double floor_exponent, double w[LANES], double grow, strands *a)
+{
+    for (int i = 0; i < BELOW_NODES; i += LANES) {
+#pragma omp simd
+        for (int l = 0; l < LANES; l++) {
+            const double w2 = w[l] * w[l], s = 1 / (1 + w2), t = 1 / w2, reach = x + p * w2, g = reach * s;
+            const double weight = exp(floor_exponent - 0.5 * (reach * reach * s + z2 * t)) * w[l] * s;
+            a->one[l] += weight;
+            a->g[l] += weight * g;
+            a->gg[l] += weight * g * g;
+            a->s[l] += weight * s;
+            a->t[l] += weight * t;
+            a->gt[l] += weight * g * t;
+            w[l] *= grow;
+        }
+    }
 }
 
 void mw_gaussian_surface(double x, double y2, double peclet, mw_moments *out)
@@ -50,24 +100,13 @@ void mw_gaussian_surface(double x, double y2, double peclet, mw_moments *out)
         const double m = p * p + a2 + 2 * CUT;
         high = (m + sqrt(fmax(0, m * m - 4 * p * p * a2))) / (2 * p * p);
     }
-    const double from = low > 1 ? acosh(sqrt(low)) : 0, to = acosh(sqrt(high));
-    const double step = (to - from) / (SURFACE_NODES - 1);
-    const double at_best = x + p * (best - 1);
-    const double floor_exponent = (at_best * at_best + y2) / (2 * best);
-    /* cosh u by multiplication: e^(u+h) = e^u e^h. */
-    double e = exp(from);
-    const double grow = exp(step);
-    sums a_sum = {0, 0, 0, 0, 0, 0};
-    for (int i = 0; i < SURFACE_NODES; i++, e *= grow) {
-        const double inv = 1 / e, cosh_u = 0.5 * (e + inv), sinh_u = 0.5 * (e - inv);
-        const double w2 = sinh_u * sinh_u, over_s = 1 / (cosh_u * cosh_u), reach = x + p * w2;
-        const double exponent = 0.5 * (reach * reach + y2) * over_s;
-        double weight = exp(floor_exponent - exponent) / cosh_u;
-        if (i == 0)
-            weight *= 0.5; /* even in u when the interval starts at 0; negligible otherwise */
-        take(&a_sum, weight, reach * over_s, over_s, over_s);
-    }
-    finish(&a_sum, step, floor_exponent, out);
+    const double from = low > 1 ? acosh(sqrt(low)) : 0, to = acosh(sqrt(high)), step = (to - from) / (SURFACE_NODES - 1);
+    const double at_best = x + p * (best - 1), floor_exponent = (at_best * at_best + y2) / (2 * best);
+    double e[LANES];
+    const double grow = first_nodes(from, step, e);
+    strands sums = {0};
+    surface_nodes(x, y2, p, floor_exponent, low > 1 ? 1 : 0.5, e, grow, &sums);
+    finish(&sums, step, floor_exponent, out);
 }
 
 /* Ends of the valley in q = w^2 for z > 0, and its lowest point. */
@@ -102,17 +141,12 @@ void mw_gaussian_below(double x, double z, double peclet, mw_moments *out)
     double low, high, best;
     valley_below(x, z2, p, &low, &high, &best);
     const double from = 0.5 * log(low), to = 0.5 * log(high), step = (to - from) / (BELOW_NODES - 1);
-    const double at_best = x + p * best;
-    const double floor_exponent = at_best * at_best / (2 * (1 + best)) + z2 / (2 * best);
-    double w = exp(from);
-    const double grow = exp(step);
-    sums a_sum = {0, 0, 0, 0, 0, 0};
-    for (int i = 0; i < BELOW_NODES; i++, w *= grow) {
-        const double w2 = w * w, over_s = 1 / (1 + w2), over_w2 = 1 / w2, reach = x + p * w2;
-        const double exponent = 0.5 * (reach * reach * over_s + z2 * over_w2);
-        take(&a_sum, exp(floor_exponent - exponent) * w * over_s, reach * over_s, over_s, over_w2);
-    }
-    finish(&a_sum, step, floor_exponent, out);
+    const double at_best = x + p * best, floor_exponent = at_best * at_best / (2 * (1 + best)) + z2 / (2 * best);
+    double w[LANES];
+    const double grow = first_nodes(from, step, w);
+    strands sums = {0};
+    below_nodes(x, z2, p, floor_exponent, w, grow, &sums);
+    finish(&sums, step, floor_exponent, out);
 }
 
 double mw_gaussian_drop(double x, double z, double peclet, double log_i_surface)
