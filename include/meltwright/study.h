@@ -95,6 +95,18 @@ mw_status mw_setting_check(const mw_setting *setting, mw_error *err);
 /* What of the setting lies outside the range that published tracks cover, as a text ("speed 5 m/s is above 3 m/s, ..."); "" when nothing. */
 size_t mw_setting_outside(const mw_plan *plan, const mw_setting *setting, char *text, size_t size);
 
+/* Where one factor alone, moved down or up, brings the setting into or out of nominal. at NaN: nothing within a factor of five. */
+typedef struct mw_turn {
+    double at;           /* value of the factor, SI */
+    double change_pct;   /* from the setting, positive = up */
+    mw_verdict beyond;   /* verdict just past it */
+} mw_turn;
+typedef struct mw_outlook {
+    mw_turn power[2], speed[2], hatch[2], layer[2]; /* [0] down, [1] up */
+} mw_outlook;
+/* For a judged result, nominal or not. Errors: MW_BAD_USAGE (not judged), MW_NO_MEMORY. */
+mw_status mw_outlook_at(const mw_plan *plan, const mw_result *result, mw_outlook *out);
+
 /* A grid over four factors. Arrays rise; hatch and layer may have n = 0 (single tracks on bare plate / no verdict). */
 typedef struct mw_grid {
     const double *power_W, *speed_m_per_s, *hatch_m, *layer_m;

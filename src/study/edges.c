@@ -113,7 +113,7 @@ void mw_margin_from(const mw_edges *edges, double value, double *down_pct, doubl
     }
 }
 
-static mw_status margins_along(const mw_plan *plan, const mw_result *r, mw_factor factor, double *down_pct, double *up_pct)
+mw_status mw_edges_along(const mw_plan *plan, const mw_result *r, mw_factor factor, mw_edges *out)
 {
     const double value = factor == MW_ALONG_POWER ? r->setting.power_W : r->setting.speed_m_per_s;
     const size_t n = mw_line_values(&value, 1, NULL);
@@ -125,11 +125,8 @@ static mw_status margins_along(const mw_plan *plan, const mw_result *r, mw_facto
         for (size_t i = 0; i < n; i++)
             (void)mw_track_at(plan, factor == MW_ALONG_POWER ? at[i] : r->setting.power_W,
                               factor == MW_ALONG_SPEED ? at[i] : r->setting.speed_m_per_s, r->setting.d4sigma_m, &track[i]);
-        mw_edges edges;
         const mw_line line = {plan, factor, track, n};
-        status = mw_edges_on(&line, r->setting.hatch_m, r->setting.layer_m, &edges);
-        if (status == MW_OK)
-            mw_margin_from(&edges, value, down_pct, up_pct);
+        status = mw_edges_on(&line, r->setting.hatch_m, r->setting.layer_m, out);
     }
     free(track);
     free(at);
@@ -141,8 +138,13 @@ mw_status mw_margins_at(const mw_plan *plan, const mw_result *result, mw_margins
     *out = (mw_margins){0, 0, 0, 0};
     if (result->judgement.verdict != MW_NOMINAL)
         return MW_OK;
-    mw_status status = margins_along(plan, result, MW_ALONG_POWER, &out->power_down_pct, &out->power_up_pct);
+    mw_edges edges;
+    mw_status status = mw_edges_along(plan, result, MW_ALONG_POWER, &edges);
+    if (status == MW_OK) {
+        mw_margin_from(&edges, result->setting.power_W, &out->power_down_pct, &out->power_up_pct);
+        status = mw_edges_along(plan, result, MW_ALONG_SPEED, &edges);
+    }
     if (status == MW_OK)
-        status = margins_along(plan, result, MW_ALONG_SPEED, &out->speed_down_pct, &out->speed_up_pct);
+        mw_margin_from(&edges, result->setting.speed_m_per_s, &out->speed_down_pct, &out->speed_up_pct);
     return status;
 }

@@ -142,6 +142,7 @@ static void add_criteria(const mw_plan *plan, const mw_track *track, double hatc
     r->judged = hatch_m > 0 && layer_m > 0;
     if (!r->judged) {
         set_nan(by_layer, sizeof by_layer / sizeof *by_layer);
+        r->judgement.verdict = MW_NOMINAL; /* a valid value; `judged` says that it means nothing */
         return;
     }
     const double w = r->pool.width_m, d = r->pool.depth_m;
