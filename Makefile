@@ -36,6 +36,7 @@ HEADERS  := $(sort $(wildcard include/meltwright/*.h))
 PROGRAM  := $(B)/meltwright
 
 .DELETE_ON_ERROR:
+.SECONDARY:
 .PHONY: all demo check test plots coverage install uninstall clean help setup FORCE
 
 all: $(PROGRAM) $(B)/libmeltwright.so $(B)/meltwright.pc ## build library and program (set-up must have run once)
@@ -97,7 +98,7 @@ $(B)/flags: FORCE
 
 # Always written anew: it holds PREFIX, which may differ from call to call.
 $(B)/meltwright.pc: FORCE
-	@printf '%s\n' 'prefix=$(PREFIX)' 'libdir=$${prefix}/lib' 'includedir=$${prefix}/include' '' 'Name: meltwright' \
+	@mkdir -p $(@D); printf '%s\n' 'prefix=$(PREFIX)' 'libdir=$${prefix}/lib' 'includedir=$${prefix}/include' '' 'Name: meltwright' \
 	  'Description: melt pools, defect criteria and process maps for laser powder bed fusion' 'Version: $(VERSION)' \
 	  'Libs: -L$${libdir} -lmeltwright' 'Libs.private: $(LIBS)' 'Cflags: -I$${includedir}' > $@
 
