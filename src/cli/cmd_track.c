@@ -1,30 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * track: one setting. */
-#include <math.h>
-
 #include "cli/common.h"
 #include "meltwright/track_text.h"
-
-static mw_status read_setting(const arguments *args, mw_setting *s, mw_error *err)
-{
-    *s = (mw_setting){NAN, NAN, NAN, 0, NAN, 293.15};
-    mw_status status = need(args, OPT_POWER, err);
-    if (status == MW_OK)
-        status = need(args, OPT_SPEED, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_POWER, MW_POWER, &s->power_W, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_SPEED, MW_SPEED, &s->speed_m_per_s, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_HATCH, MW_LENGTH, &s->hatch_m, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_LAYER, MW_LENGTH, &s->layer_m, err);
-    if (status == MW_OK)
-        status = read_beam(args, true, &s->d4sigma_m, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_PREHEAT, MW_TEMPERATURE, &s->preheat_K, err);
-    return status;
-}
 
 static mw_status print_result(FILE *to, output_format format, const mw_plan *plan, const mw_result *r, const mw_provenance *provenance)
 {
@@ -64,7 +41,11 @@ int run_track(const arguments *args)
     mw_result result;
     mw_status status = refuse_words(args, &err);
     if (status == MW_OK)
-        status = read_setting(args, &setting, &err);
+        status = need(args, OPT_POWER, &err);
+    if (status == MW_OK)
+        status = need(args, OPT_SPEED, &err);
+    if (status == MW_OK)
+        status = read_setting(args, true, &setting, &err);
     if (status == MW_OK)
         status = read_format(args, FORMAT_TEXT, &format, &err);
     if (status == MW_OK)

@@ -98,19 +98,42 @@ mw_status read_model(const arguments *args, mw_model *out, mw_error *err)
                    near != NULL ? "; did you mean " : "", near != NULL ? near : "", near != NULL ? "?" : "");
 }
 
+/* An option and where its value goes. */
+typedef struct destination {
+    option_id id;
+    mw_quantity quantity;
+    double *to;
+} destination;
+
+static mw_status read_all(const arguments *args, const destination *d, size_t n, mw_error *err)
+{
+    mw_status status = MW_OK;
+    for (size_t i = 0; i < n && status == MW_OK; i++)
+        status = read_quantity(args, d[i].id, d[i].quantity, d[i].to, err);
+    return status;
+}
+
 mw_status read_overrides(const arguments *args, mw_overrides *out, mw_error *err)
 {
     *out = mw_no_overrides;
-    mw_status status = read_quantity(args, OPT_ABSORPTIVITY, MW_PLAIN, &out->absorptivity, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_CONDUCTIVITY, MW_CONDUCTIVITY, &out->conductivity_W_per_mK, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_DENSITY, MW_DENSITY, &out->density_kg_per_m3, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_HEAT_CAPACITY, MW_HEAT_CAPACITY, &out->heat_capacity_J_per_kgK, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_MELTING, MW_KELVIN, &out->melting_point_K, err);
-    return status;
+    const destination d[] = {{OPT_ABSORPTIVITY, MW_PLAIN, &out->absorptivity},
+                             {OPT_CONDUCTIVITY, MW_CONDUCTIVITY, &out->conductivity_W_per_mK},
+                             {OPT_DENSITY, MW_DENSITY, &out->density_kg_per_m3},
+                             {OPT_HEAT_CAPACITY, MW_HEAT_CAPACITY, &out->heat_capacity_J_per_kgK},
+                             {OPT_MELTING, MW_KELVIN, &out->melting_point_K}};
+    return read_all(args, d, sizeof d / sizeof *d, err);
+}
+
+mw_status read_setting(const arguments *args, bool beam_required, mw_setting *out, mw_error *err)
+{
+    *out = (mw_setting){NAN, NAN, NAN, 0, NAN, 293.15};
+    const destination d[] = {{OPT_POWER, MW_POWER, &out->power_W},
+                             {OPT_SPEED, MW_SPEED, &out->speed_m_per_s},
+                             {OPT_HATCH, MW_LENGTH, &out->hatch_m},
+                             {OPT_LAYER, MW_LENGTH, &out->layer_m},
+                             {OPT_PREHEAT, MW_TEMPERATURE, &out->preheat_K}};
+    const mw_status status = read_all(args, d, sizeof d / sizeof *d, err);
+    return status == MW_OK ? read_beam(args, beam_required, &out->d4sigma_m, err) : status;
 }
 
 mw_status read_beam(const arguments *args, bool required, double *d4sigma_m, mw_error *err)

@@ -32,6 +32,8 @@ mw_status read_model(const arguments *args, mw_model *out, mw_error *err);
 mw_status read_overrides(const arguments *args, mw_overrides *out, mw_error *err);
 /* D4sigma in m from the one beam option; NaN when none is given and `required` is false. */
 mw_status read_beam(const arguments *args, bool required, double *d4sigma_m, mw_error *err);
+/* Power, speed, hatch, layer, preheat and beam as one setting; what is not given: NaN, layer 0 (bare plate), preheat 20 C. */
+mw_status read_setting(const arguments *args, bool beam_required, mw_setting *out, mw_error *err);
 mw_status read_threads(const arguments *args, int *out, mw_error *err);
 typedef enum output_format { FORMAT_TEXT, FORMAT_CSV, FORMAT_JSON } output_format;
 /* From --format, else from the ending of -o, else `standard`. */

@@ -76,19 +76,8 @@ static void remark_on_columns(const row_source *s)
 static mw_status read_defaults(row_source *s, mw_error *err)
 {
     const arguments *args = s->args;
-    s->defaults = (row_values){.setting = {NAN, NAN, NAN, 0, NAN, 293.15}, .alloy = args->value[OPT_ALLOY]};
-    mw_setting *d = &s->defaults.setting;
-    mw_status status = read_quantity(args, OPT_POWER, MW_POWER, &d->power_W, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_SPEED, MW_SPEED, &d->speed_m_per_s, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_HATCH, MW_LENGTH, &d->hatch_m, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_LAYER, MW_LENGTH, &d->layer_m, err);
-    if (status == MW_OK)
-        status = read_quantity(args, OPT_PREHEAT, MW_TEMPERATURE, &d->preheat_K, err);
-    if (status == MW_OK)
-        status = read_beam(args, false, &d->d4sigma_m, err);
+    s->defaults.alloy = args->value[OPT_ALLOY];
+    mw_status status = read_setting(args, false, &s->defaults.setting, err);
     if (status == MW_OK)
         status = read_overrides(args, &s->defaults.overrides, err);
     if (status == MW_OK)

@@ -28,6 +28,9 @@ mw_picture_format mw_picture_format_of(const char *path)
 /* PLplot ends the program when it cannot go on; a library must not. Its exit hook jumps back here instead. */
 static jmp_buf way_out;
 static char reason[256];
+/* Where PLplot writes what it would otherwise print: it wants at least 160 bytes. */
+static PLINT error_code;
+static char error_text[512];
 
 static int leave(const char *text)
 {
@@ -81,12 +84,14 @@ mw_status mw_canvas_run(mw_picture_format format, const char *path, double width
     reason[0] = '\0';
     plsexit(leave);
     plsabort(note);
+    plsError(&error_code, error_text);
     if (setjmp(way_out) == 0) {
         if (!driver_there(drivers[format])) {
             (void)snprintf(reason, sizeof reason, "the %s driver is not installed", drivers[format]);
         } else {
             PLINT stream;
             plmkstrm(&stream); /* leaves a stream of the calling program alone */
+            plsError(&error_code, error_text);
             open_page(format, path, &canvas);
             draw(&canvas, what);
             plend1();
@@ -94,6 +99,7 @@ mw_status mw_canvas_run(mw_picture_format format, const char *path, double width
     }
     plsexit(NULL);
     plsabort(NULL);
+    plsError(NULL, NULL);
     if (reason[0] != '\0')
         return mw_fail(err, MW_CANNOT_WRITE, NULL, 0, "PLplot cannot draw the picture: %s", reason);
     return MW_OK;

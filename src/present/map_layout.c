@@ -172,8 +172,8 @@ typedef struct measures {
 static measures measure(const mw_map_picture *p, const mw_map_page *page)
 {
     const double energy = p->n_energy > 0 ? 1 : 0;
-    measures m = {.left = EDGE + 128, .right = EDGE + energy * 124, .head = 50 + energy * 32};
-    m.gap_x = 44 + energy * 112;
+    measures m = {.left = EDGE + 128, .right = EDGE + energy * 140, .head = 50 + energy * 32};
+    m.gap_x = 84 + energy * 90;
     m.gap_y = m.head + 36;
     if (page->columns == 1)
         m.plot_w = 1600 - m.left - m.right;

@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * Moving Gaussian source: high-precision rows, GSL's adaptive quadrature, limits, published and computed tables, properties. */
-#include "check.h"
+#include "reference_rows.h"
 
 #include <gsl/gsl_integration.h>
 #include <gsl/gsl_qrng.h>
@@ -17,33 +17,7 @@ static const double pi = 3.14159265358979323846;
 /* Columns of tests/data/gaussian_pools.csv (two multi-precision methods that agree to 21 digits; SI). */
 enum { ID, P_W, V, D4S, A, K, RHO, CP, T0, TM, MELT, X1, T_PEAK = 29, X_PEAK, WIDTH, DEPTH, LENGTH, FRONT, BACK, X_WIDTH, X_DEPTH, COLUMNS = 40 };
 
-typedef struct row {
-    double v[COLUMNS];
-} row;
-
-static size_t read_rows(row *out, size_t most)
-{
-    FILE *f = fopen("tests/data/gaussian_pools.csv", "r");
-    assert_non_null(f);
-    char line[4096];
-    size_t n = 0;
-    assert_non_null(fgets(line, sizeof line, f));
-    while (n < most && fgets(line, sizeof line, f) != NULL) {
-        int c = 0;
-        for (char *cell = line; cell != NULL && c < COLUMNS; c++) {
-            char *end = strchr(cell, ',');
-            if (end != NULL)
-                *end++ = '\0';
-            out[n].v[c] = cell[0] != '\0' && cell[0] != '\n' ? strtod(cell, NULL) : NAN;
-            cell = end;
-        }
-        n++;
-    }
-    fclose(f);
-    return n;
-}
-
-static void setup(const row *r, mw_source *s, mw_medium *m)
+static void setup(const reference_row *r, mw_source *s, mw_medium *m)
 {
     *s = (mw_source){r->v[A] * r->v[P_W], r->v[V], r->v[D4S] / 4};
     *m = (mw_medium){r->v[K], r->v[RHO] * r->v[CP], r->v[T0], r->v[TM]};
@@ -54,8 +28,8 @@ static void setup(const row *r, mw_source *s, mw_medium *m)
 static void every_reference_row_is_met(void **state)
 {
     (void)state;
-    row rows[100];
-    const size_t n = read_rows(rows, 100);
+    reference_row rows[REFERENCE_ROWS];
+    const size_t n = read_reference_rows("tests/data/gaussian_pools.csv", COLUMNS, rows);
     assert_true(n >= 40);
     size_t melted = 0;
     for (size_t i = 0; i < n; i++) {
@@ -86,8 +60,8 @@ static void every_reference_row_is_met(void **state)
 static void temperatures_at_the_reference_points(void **state)
 {
     (void)state;
-    row rows[100];
-    const size_t n = read_rows(rows, 100);
+    reference_row rows[REFERENCE_ROWS];
+    const size_t n = read_reference_rows("tests/data/gaussian_pools.csv", COLUMNS, rows);
     for (size_t i = 0; i < n; i++) {
         mw_source s;
         mw_medium m;

@@ -1,7 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * Moving point source: multi-precision rows, GSL's Lambert function, root finder and minimiser, the heat equation
  * itself, closed forms and limits. */
-#include "check.h"
+#include "reference_rows.h"
 
 #include <gsl/gsl_deriv.h>
 #include <gsl/gsl_errno.h>
@@ -44,33 +44,6 @@ enum {
     COLUMNS
 };
 
-typedef struct row {
-    double v[COLUMNS]; /* [ID] is not a number and not used */
-} row;
-
-static size_t read_rows(row *out, size_t most)
-{
-    FILE *f = fopen("tests/data/rosenthal_pools.csv", "r");
-    assert_non_null(f);
-    char line[4096];
-    size_t n = 0;
-    assert_non_null(fgets(line, sizeof line, f));
-    while (n < most && fgets(line, sizeof line, f) != NULL) {
-        int c = 0;
-        for (char *cell = line; cell != NULL && c < COLUMNS; c++) {
-            char *end = strchr(cell, ',');
-            if (end != NULL)
-                *end++ = '\0';
-            out[n].v[c] = strtod(cell, NULL);
-            cell = end;
-        }
-        assert_int_equal(c, COLUMNS);
-        n++;
-    }
-    fclose(f);
-    return n;
-}
-
 static void setup(const double *v, mw_source *s, mw_medium *m)
 {
     *s = (mw_source){v[A] * v[P_W], v[V], v[D4S] / 4};
@@ -82,8 +55,8 @@ static void setup(const double *v, mw_source *s, mw_medium *m)
 static void every_reference_pool_is_met(void **state)
 {
     (void)state;
-    row rows[100];
-    const size_t count = read_rows(rows, 100);
+    reference_row rows[REFERENCE_ROWS];
+    const size_t count = read_reference_rows("tests/data/rosenthal_pools.csv", COLUMNS, rows);
     assert_true(count >= 30);
     for (size_t i = 0; i < count; i++) {
         const double *v = rows[i].v, bound = 4e-15;
@@ -109,8 +82,8 @@ static void every_reference_pool_is_met(void **state)
 static void every_reference_temperature_is_met(void **state)
 {
     (void)state;
-    row rows[100];
-    const size_t count = read_rows(rows, 100);
+    reference_row rows[REFERENCE_ROWS];
+    const size_t count = read_reference_rows("tests/data/rosenthal_pools.csv", COLUMNS, rows);
     for (size_t i = 0; i < count; i++) {
         const double *v = rows[i].v;
         mw_source s;
