@@ -11,8 +11,8 @@
 
 /* Lines of equal value of one quantity, labelled on the line. */
 typedef struct mw_map_contours {
-    const char *name; /* "track depth" */
-    const char *unit; /* "um"; NULL or "" for a pure number */
+    const char *name;    /* "track depth" */
+    const char *unit;    /* "um"; NULL or "" for a pure number */
     const double *field; /* n_speed rows of n_power; NaN is blank */
     size_t n_level;      /* 0: a few round numbers are chosen */
     const double *levels;
@@ -37,11 +37,12 @@ typedef struct mw_map_panel {
     const mw_map_contours *contours;
 } mw_map_panel;
 
-/* A point on every panel; without a label it is shown by its number, counted from 1. */
+/* A point; without a label it is shown by its number, counted from 1. */
 typedef struct mw_map_mark {
     double power_W;
     double speed_mm_per_s;
     const char *label;
+    int panel; /* the one it belongs on, counted from 0; negative: every panel */
 } mw_map_mark;
 
 typedef struct mw_map_picture {

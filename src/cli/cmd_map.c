@@ -14,7 +14,7 @@ enum { CONTOUR_KINDS = 3, MOST_ENERGY_LINES = 12, MOST_MARKS = 200 };
 
 static const struct {
     const char *word, *name, *unit;
-} contour_kind[CONTOUR_KINDS] = {{"width", "width", "um"}, {"depth", "depth", "um"}, {"build-rate", "build rate", "cm3/h"}};
+} contour_kind[CONTOUR_KINDS] = {{"width", "width", "\xC2\xB5m"}, {"depth", "depth", "\xC2\xB5m"}, {"build-rate", "build rate", "cm3/h"}};
 
 /* Fields of one panel, and the best place in it. */
 typedef struct panel_fields {
@@ -206,8 +206,7 @@ static mw_status read_marks(map_run *m, mw_error *err)
             break;
         }
         m->label[m->n_mark] = label_of(rows_reader(rows));
-        m->mark[m->n_mark] = (mw_map_mark){v.setting.power_W, 1e3 * v.setting.speed_m_per_s, m->label[m->n_mark]};
-        (void)panel;
+        m->mark[m->n_mark] = (mw_map_mark){v.setting.power_W, 1e3 * v.setting.speed_m_per_s, m->label[m->n_mark], panel};
         m->n_mark++;
     }
     rows_close(rows);
@@ -284,7 +283,7 @@ static mw_status draw(map_run *m, mw_error *err)
     char title[128], beam[160], footer[160];
     (void)snprintf(title, sizeof title, "%s%s%s%s: process map", m->alloy->name, m->alloy->n_designation > 0 ? " (" : "",
                    m->alloy->n_designation > 0 ? m->alloy->designation[0] : "", m->alloy->n_designation > 0 ? ")" : "");
-    (void)snprintf(beam, sizeof beam, "beam %.4g um (D4sigma), plate at %.4g C, model %s", 1e6 * g->d4sigma_m, g->preheat_K - 273.15,
+    (void)snprintf(beam, sizeof beam, "beam %.4g \xC2\xB5m (D4sigma), plate at %.4g \xC2\xB0" "C, model %s", 1e6 * g->d4sigma_m, g->preheat_K - 273.15,
                    mw_model_word(m->plan.model));
     (void)snprintf(footer, sizeof footer, "meltwright %s, card %s: an estimate, confirm with coupons", mw_version(), m->alloy->hash);
     const char *const subtitle[] = {beam};

@@ -52,7 +52,7 @@ static void draw_region_key(const mw_canvas *c, const mw_page_key *k)
     double x[] = {x0, x1, x1, x0}, y[] = {y0, y0, y1, y1};
     bool rim[4] = {false};
     size_t start[] = {0, 4};
-    const mw_outline *const outline = &(const mw_outline) {.n_ring = 1, .n_point = 4, .start = start, .x = x, .y = y, .rim = rim};
+    const mw_outline *const outline = &(const mw_outline){.n_ring = 1, .n_point = 4, .start = start, .x = x, .y = y, .rim = rim};
     const mw_region_style *const s = &mw_region_styles[k->which];
     mw_draw_regions(c, 1, &outline, &s, x0, y0);
     if (k->which == MW_REGION_NOMINAL)
@@ -66,8 +66,12 @@ static void draw_key(const mw_canvas *c, const mw_page_key *k)
     const double x[] = {k->x, k->x + 56}, y[] = {k->y, k->y}, low[] = {k->y - 5, k->y - 5};
     const mw_contour_style *s = &mw_contour_styles[k->which % MW_CONTOUR_STYLES];
     switch (k->kind) {
-    case MW_KEY_REGION: draw_region_key(c, k); break;
-    case MW_KEY_BALLING: mw_draw_limit(c, 2, x, low); break;
+    case MW_KEY_REGION:
+        draw_region_key(c, k);
+        break;
+    case MW_KEY_BALLING:
+        mw_draw_limit(c, 2, x, low);
+        break;
     case MW_KEY_ENERGY:
         mw_canvas_line(c, 2, x, y, 2, mw_energy_ink);
         mw_draw_crossing(c, k->x + 28, k->y);

@@ -122,8 +122,8 @@ void mw_canvas_line(const mw_canvas *c, size_t n, const double x[], const double
     plline((PLINT)n, x, y);
 }
 
-void mw_canvas_dashes(const mw_canvas *c, size_t n, const double x[], const double y[], double stroke, double on,
-                      double off, mw_colour colour)
+void mw_canvas_dashes(const mw_canvas *c, size_t n, const double x[], const double y[], double stroke, double on, double off,
+                      mw_colour colour)
 {
     enum { MOST_POINTS = 64 };
     double dx[MOST_POINTS], dy[MOST_POINTS];
@@ -174,8 +174,7 @@ void mw_canvas_box(const mw_canvas *c, double x0, double y0, double x1, double y
 
 void mw_canvas_frame(const mw_canvas *c, double x0, double y0, double x1, double y1, double stroke, mw_colour colour)
 {
-    mw_canvas_line(c, 6, (const double[]){x0, x1, x1, x0, x0, x1}, (const double[]){y0, y0, y1, y1, y0, y0}, stroke,
-                   colour);
+    mw_canvas_line(c, 6, (const double[]){x0, x1, x1, x0, x0, x1}, (const double[]){y0, y0, y1, y1, y0, y0}, stroke, colour);
 }
 
 enum { CIRCLE_POINTS = 20 };
@@ -207,7 +206,10 @@ void mw_canvas_circle(const mw_canvas *c, double x, double y, double radius, dou
 
 enum { TEXT_ROOM = 1024 };
 
-static bool continues(unsigned char byte) { return (byte & 0xC0) == 0x80; }
+static bool continues(unsigned char byte)
+{
+    return (byte & 0xC0) == 0x80;
+}
 
 /* Length of the well-formed UTF-8 character at s, 0 when it is none. */
 static size_t utf8_length(const char *s)
@@ -259,8 +261,8 @@ double mw_text_width(const char *text, bool bold)
         const char *letters;
         double em;
     } classes[] = {
-        {"ijlI|'", 0.29}, {" .,:;!/", 0.33}, {"frt()[]-\"*", 0.41}, {"szJcxkvy?L", 0.57}, {"mMW@%", 0.97}, {"w=+<>~", 0.83},
-        {"ABCDEGHKNOQRUVX&#", 0.72},
+        {"ijlI|'", 0.29}, {" .,:;!/", 0.33}, {"frt()[]-\"*", 0.41},       {"szJcxkvy?L", 0.57},
+        {"mMW@%", 0.97},  {"w=+<>~", 0.83},  {"ABCDEGHKNOQRUVX&#", 0.72},
     };
     double sum = 0;
     for (const char *p = text; *p != '\0'; p++) {

@@ -14,7 +14,7 @@ typedef struct mw_colour {
 
 typedef struct mw_canvas {
     double width, height;
-    double mm_per_unit;    /* for the height of letters */
+    double mm_per_unit;     /* for the height of letters */
     double stroke_per_unit; /* for the width of lines */
 } mw_canvas;
 
@@ -36,8 +36,8 @@ mw_status mw_canvas_run(mw_picture_format format, const char *path, double width
                         void (*draw)(const mw_canvas *canvas, void *what), void *what, mw_error *err);
 
 void mw_canvas_line(const mw_canvas *c, size_t n, const double x[], const double y[], double stroke, mw_colour colour);
-void mw_canvas_dashes(const mw_canvas *c, size_t n, const double x[], const double y[], double stroke, double on,
-                      double off, mw_colour colour);
+void mw_canvas_dashes(const mw_canvas *c, size_t n, const double x[], const double y[], double stroke, double on, double off,
+                      mw_colour colour);
 /* Even-odd fill of one closed path. */
 void mw_canvas_fill(const mw_canvas *c, size_t n, const double x[], const double y[], mw_colour colour);
 void mw_canvas_box(const mw_canvas *c, double x0, double y0, double x1, double y1, mw_colour colour);

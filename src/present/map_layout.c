@@ -8,7 +8,18 @@
 
 #include "present/map_panel.h"
 
-enum { EDGE = 36, KEY_SIGN = 56, KEY_GAP = 14, KEY_APART = 44, KEY_ROW = 46, TITLE_STEP = 56, TEXT_STEP = 36, TICKS = 50, AXIS = 50, KEYS_ABOVE = 26 };
+enum {
+    EDGE = 36,
+    KEY_SIGN = 56,
+    KEY_GAP = 14,
+    KEY_APART = 44,
+    KEY_ROW = 46,
+    TITLE_STEP = 56,
+    TEXT_STEP = 36,
+    TICKS = 50,
+    AXIS = 50,
+    KEYS_ABOVE = 26
+};
 
 /* ---- text lines ------------------------------------------------------------------------------------------------ */
 
@@ -60,7 +71,10 @@ static void add_wrapped(mw_map_page *page, const char *text, double size, bool b
 
 /* ---- panel grid ------------------------------------------------------------------------------------------------ */
 
-static bool same(double a, double b) { return fabs(a - b) <= 1e-9 * fabs(b); }
+static bool same(double a, double b)
+{
+    return fabs(a - b) <= 1e-9 * fabs(b);
+}
 
 /* Index of panel k's value among the different ones, in order of first appearance. */
 static size_t rank(const mw_map_picture *p, size_t k, bool layer, size_t *count)
@@ -93,8 +107,8 @@ static void arrange(const mw_map_picture *p, mw_map_page *page, size_t column[],
         table = table && !taken[row[k]][column[k]];
         taken[row[k]][column[k]] = true;
     }
-    table = table && hatches * layers == p->n_panel && hatches <= MOST_COLUMNS
-            && (hatches > 1 || layers <= 2); /* a tall single column wastes the page */
+    table = table && hatches * layers == p->n_panel && hatches <= MOST_COLUMNS &&
+            (hatches > 1 || layers <= 2); /* a tall single column wastes the page */
     page->columns = table ? hatches : (size_t)ceil(sqrt((double)p->n_panel));
     page->rows = table ? layers : (p->n_panel + page->columns - 1) / page->columns;
     for (size_t k = 0; k < p->n_panel && !table; k++) {
@@ -139,7 +153,8 @@ static void collect_keys(const mw_map_picture *p, const mw_map_scene scene[], mw
         const mw_map_contours *c = &p->panels[of].contours[s];
         const char *unit = c->unit == NULL ? "" : strcmp(c->unit, "um") == 0 ? "\xc2\xb5m" : c->unit;
         char text[160];
-        (void)snprintf(text, sizeof text, unit[0] != '\0' ? "%.100s (%.40s)" : "%.100s%.40s", c->name == NULL ? "" : c->name, unit);
+        (void)snprintf(text, sizeof text, unit[0] != '\0' ? "%.100s (%.40s)" : "%.100s%.40s", c->name == NULL ? "" : c->name,
+                       unit);
         add_key(page, MW_KEY_CONTOUR, s, text);
     }
 }
@@ -183,8 +198,8 @@ static measures measure(const mw_map_picture *p, const mw_map_page *page)
     return m;
 }
 
-static void place_frames(const mw_map_picture *p, mw_map_page *page, const measures *m, const size_t column[],
-                         const size_t row[], double top)
+static void place_frames(const mw_map_picture *p, mw_map_page *page, const measures *m, const size_t column[], const size_t row[],
+                         double top)
 {
     for (size_t k = 0; k < p->n_panel; k++) {
         mw_map_frame *f = &page->frame[k];

@@ -30,7 +30,7 @@ typedef struct mw_map_page {
     size_t n_line, n_key;
     mw_page_line line[MW_PAGE_LINES];
     mw_page_key key[MW_PAGE_KEYS];
-    double head_y; /* of panel titles, above a frame */
+    double head_y;                             /* of panel titles, above a frame */
     double axes_x0, axes_x1, axes_y0, axes_y1; /* around all frames */
 } mw_map_page;
 

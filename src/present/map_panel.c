@@ -125,8 +125,8 @@ static void collect_crossings(const panel_drawing *d, const mw_outline *o, cross
                 continue;
             const double t = a0 / (a0 - a1), x = o->x[i] + t * (o->x[j] - o->x[i]), y = o->y[i] + t * (o->y[j] - o->y[i]);
             const double along = ((x - l->x[0]) * ux + (y - l->y[0]) * uy) / (ux * ux + uy * uy);
-            bool known = along < 0 || along > 1 || l->n == 32
-                         || (l->owner != MW_REGION_NO_TRACK && mw_outline_inside(&d->scene->region[MW_REGION_NO_TRACK], x, y));
+            bool known = along < 0 || along > 1 || l->n == 32 ||
+                         (l->owner != MW_REGION_NO_TRACK && mw_outline_inside(&d->scene->region[MW_REGION_NO_TRACK], x, y));
             for (size_t k = 0; k < l->n && !known; k++) /* each border belongs to two regions */
                 known = hypot(l->at_x[k] - x, l->at_y[k] - y) < 4;
             if (!known) {
@@ -206,9 +206,11 @@ static void name_region(panel_drawing *d, int r)
         return;
     for (int pass = 0; pass < 8; pass++) { /* clear of energy lines if possible; lying before standing; large before small */
         const bool clear = pass < 4, upward = pass / 2 % 2 == 1;
-        const double size = pass % 2 == 0 ? MW_SIZE_HEAD : MW_SIZE_MARK, w = mw_text_width(s->name, true) * size + 14, h = 1.35 * size;
+        const double size = pass % 2 == 0 ? MW_SIZE_HEAD : MW_SIZE_MARK, w = mw_text_width(s->name, true) * size + 14,
+                     h = 1.35 * size;
         double x, y;
-        const double room = mw_placer_pole(&d->placer, &d->scene->region[r], cover, upward ? h : w, upward ? w : h, clear, &x, &y);
+        const double room =
+            mw_placer_pole(&d->placer, &d->scene->region[r], cover, upward ? h : w, upward ? w : h, clear, &x, &y);
         if (room < 1.08)
             continue;
         const mw_text_style style = {.size = size, .anchor = 0.5, .bold = true, .upward = upward, .colour = s->text};
@@ -258,8 +260,11 @@ static void seek_label(panel_drawing *d, size_t n, const double x[], const doubl
 
 static void label_line(panel_drawing *d, const mw_outline *o, const char *text, mw_colour colour, double aside)
 {
-    line_label l = {.text = text, .colour = colour, .aside = aside,
-                    .w = mw_text_width(text, false) * MW_SIZE_TEXT + 8, .h = 1.15 * MW_SIZE_TEXT};
+    line_label l = {.text = text,
+                    .colour = colour,
+                    .aside = aside,
+                    .w = mw_text_width(text, false) * MW_SIZE_TEXT + 8,
+                    .h = 1.15 * MW_SIZE_TEXT};
     line_label *to = &l;
     each_run(d, o, seek_label, &to);
     if (!(l.best > 0))
@@ -277,6 +282,15 @@ static void mark_at(const panel_drawing *d, size_t k, double *x, double *y)
 {
     *x = mw_frame_x(d->frame, d->picture->marks[k].power_W);
     *y = mw_frame_y(d->frame, d->picture->marks[k].speed_mm_per_s);
+}
+
+/* On this panel, and inside its axes. */
+static bool mark_shows(const panel_drawing *d, size_t k)
+{
+    const int panel = d->picture->marks[k].panel;
+    double x, y;
+    mark_at(d, k, &x, &y);
+    return (panel < 0 || panel == d->panel - d->picture->panels) && in_frame(d->frame, x, y);
 }
 
 static void label_mark(panel_drawing *d, size_t k)
@@ -301,8 +315,10 @@ static void label_mark(panel_drawing *d, size_t k)
             ty = cy;
         }
     }
-    if (!(best > 0))
-        return;
+    if (!(best > 0)) { /* crowded: a label over something else is better than a point without a name */
+        tx = x + (x + w + 20 < d->frame->x1 ? 1 : -1) * (0.5 * w + 14);
+        ty = y;
+    }
     const mw_box box = {tx - 0.5 * w, ty - 0.5 * h, tx + 0.5 * w, ty + 0.5 * h};
     mw_canvas_box(d->c, box.x0, box.y0, box.x1, box.y1, mw_paper);
     mw_canvas_frame(d->c, box.x0, box.y0, box.x1, box.y1, 1.4, mw_soft_ink);
@@ -314,17 +330,15 @@ static void draw_marks(panel_drawing *d)
 {
     double x, y;
     for (size_t k = 0; k < d->picture->n_mark; k++) {
-        mark_at(d, k, &x, &y);
-        if (!in_frame(d->frame, x, y))
+        if (!mark_shows(d, k))
             continue;
+        mark_at(d, k, &x, &y);
         mw_draw_mark(d->c, x, y);
         mw_placer_add_box(&d->placer, (mw_box){x - 12, y - 12, x + 12, y + 12});
     }
-    for (size_t k = 0; k < d->picture->n_mark; k++) {
-        mark_at(d, k, &x, &y);
-        if (in_frame(d->frame, x, y))
+    for (size_t k = 0; k < d->picture->n_mark; k++)
+        if (mark_shows(d, k))
             label_mark(d, k);
-    }
 }
 
 /* ---- the panel ------------------------------------------------------------------------------------------------- */

@@ -37,7 +37,11 @@ static double larger_at(double t, double ax, double ay, double ux, double uy)
  * is at an end, at a zero of one of them, or where they are equal. */
 static double distance(double ax, double ay, double ux, double uy)
 {
-    const double at[] = {0, 1, ux != 0 ? -ax / ux : 0, uy != 0 ? -ay / uy : 0, ux != uy ? (ay - ax) / (ux - uy) : 0,
+    const double at[] = {0,
+                         1,
+                         ux != 0 ? -ax / ux : 0,
+                         uy != 0 ? -ay / uy : 0,
+                         ux != uy ? (ay - ax) / (ux - uy) : 0,
                          ux + uy != 0 ? -(ax + ay) / (ux + uy) : 0};
     double least = INFINITY;
     for (size_t k = 0; k < sizeof at / sizeof at[0]; k++)
@@ -70,8 +74,8 @@ double mw_placer_clearance(const mw_placer *p, double x, double y, double hw, do
     return least;
 }
 
-double mw_placer_pole(const mw_placer *p, const mw_outline *in, const mw_outline *out, double w, double h,
-                      bool with_lines, double *x, double *y)
+double mw_placer_pole(const mw_placer *p, const mw_outline *in, const mw_outline *out, double w, double h, bool with_lines,
+                      double *x, double *y)
 {
     enum { NX = 32, NY = 24 };
     double best = 0, step_x = (p->bounds.x1 - p->bounds.x0) / NX, step_y = (p->bounds.y1 - p->bounds.y0) / NY;

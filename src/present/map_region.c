@@ -40,7 +40,10 @@ static double ring_area(const mw_outline *o, size_t r)
 }
 
 /* A hole and the region that fills it have the same ring but for rounding and thinning: the hole goes first. */
-static double painting_order(const painted_ring *p) { return p->area < 0 ? -1.01 * p->area : p->area; }
+static double painting_order(const painted_ring *p)
+{
+    return p->area < 0 ? -1.01 * p->area : p->area;
+}
 
 static int large_first(const void *a, const void *b)
 {
@@ -138,8 +141,8 @@ static void add_hatch_line(meander *m, const double x[2], const double y[2])
     if (m->n > 0) {
         const double lx = m->x[m->n - 1], ly = m->y[m->n - 1];
         first = hypot(x[1] - lx, y[1] - ly) < hypot(x[0] - lx, y[0] - ly);
-        if (m->n + 2 > 256 || hypot(x[first] - lx, y[first] - ly) > 6 * m->style->hatch_spacing
-            || !along_border(m->o, (const double[]){lx, x[first]}, (const double[]){ly, y[first]})) {
+        if (m->n + 2 > 256 || hypot(x[first] - lx, y[first] - ly) > 6 * m->style->hatch_spacing ||
+            !along_border(m->o, (const double[]){lx, x[first]}, (const double[]){ly, y[first]})) {
             flush(m);
             first = 0;
         }

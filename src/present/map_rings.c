@@ -34,8 +34,7 @@ bool mw_outline_inside(const mw_outline *o, double x, double y)
     for (size_t r = 0; r < o->n_ring; r++) {
         const size_t b = o->start[r], e = o->start[r + 1];
         for (size_t i = b, p = e - 1; i < e; p = i++)
-            if ((o->y[i] > y) != (o->y[p] > y)
-                && x < o->x[i] + (y - o->y[i]) * (o->x[p] - o->x[i]) / (o->y[p] - o->y[i]))
+            if ((o->y[i] > y) != (o->y[p] > y) && x < o->x[i] + (y - o->y[i]) * (o->x[p] - o->x[i]) / (o->y[p] - o->y[i]))
                 in = !in;
     }
     return in;
@@ -50,8 +49,14 @@ typedef struct thinner {
     bool *keep;
 } thinner;
 
-static double scaled_x(const thinner *t, size_t i) { return t->o->x[t->begin + i % t->n] / t->tol_x; }
-static double scaled_y(const thinner *t, size_t i) { return t->o->y[t->begin + i % t->n] / t->tol_y; }
+static double scaled_x(const thinner *t, size_t i)
+{
+    return t->o->x[t->begin + i % t->n] / t->tol_x;
+}
+static double scaled_y(const thinner *t, size_t i)
+{
+    return t->o->y[t->begin + i % t->n] / t->tol_y;
+}
 
 /* Distance of point i from the stretch a-b, in tolerances. */
 static double offset(const thinner *t, size_t a, size_t b, size_t i)
@@ -65,8 +70,8 @@ static double offset(const thinner *t, size_t a, size_t b, size_t i)
     return hypot(px - at * ux, py - at * uy);
 }
 
-/* Keeps the point farthest from the chord when it is more than a tolerance away, and does the same with both halves.
- * The larger half waits on the stack in the caller's loop, so the depth stays logarithmic in effect. */
+/* Keeps the point farthest from the chord when it is more than a tolerance away, and does the same with both
+ * parts. The smaller part is the one that recurses, so the depth is at most log2(n). */
 static void thin(const thinner *t, size_t a, size_t b)
 {
     while (b - a > 1) {
@@ -82,7 +87,7 @@ static void thin(const thinner *t, size_t a, size_t b)
         if (far == a)
             return;
         t->keep[t->begin + far % t->n] = true;
-        if (far - a < b - far) { /* recurse into the smaller half: at most log2(n) deep */
+        if (far - a < b - far) {
             thin(t, a, far);
             a = far;
         } else {
@@ -92,7 +97,8 @@ static void thin(const thinner *t, size_t a, size_t b)
     }
 }
 
-/* Fixed points: both ends of every stretch along the rim. A ring without any gets its first point and the one farthest from it. */
+/* Fixed points: both ends of every stretch along the rim. A ring without any gets its first point and the one farthest from it.
+ */
 static size_t fix_points(const thinner *t)
 {
     const bool *rim = t->o->rim + t->begin;
@@ -147,8 +153,8 @@ void mw_outline_simplify(mw_outline *o, double tol_x, double tol_y)
         return;
     }
     for (size_t r = 0; r < o->n_ring; r++) {
-        const thinner t = {.o = o, .begin = o->start[r], .n = o->start[r + 1] - o->start[r],
-                           .tol_x = tol_x, .tol_y = tol_y, .keep = keep};
+        const thinner t = {
+            .o = o, .begin = o->start[r], .n = o->start[r + 1] - o->start[r], .tol_x = tol_x, .tol_y = tol_y, .keep = keep};
         thin_ring(&t);
     }
     size_t n = 0, rings = 0, begin = 0;

@@ -50,8 +50,8 @@ mw_status mw_map_fields_make(const mw_map_panel *panel, size_t nx, size_t ny, mw
     out->block = malloc(8 * n * sizeof *out->block);
     if (out->block == NULL)
         return mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory for a map of %zu points", n);
-    double **const part[8] = {&out->lof, &out->over, &out->lof_first, &out->over_first,
-                              &out->minus_lof, &out->minus_over, &out->melt, &out->minus_melt};
+    double **const part[8] = {&out->lof,       &out->over,       &out->lof_first, &out->over_first,
+                              &out->minus_lof, &out->minus_over, &out->melt,      &out->minus_melt};
     for (size_t k = 0; k < 8; k++)
         *part[k] = out->block + k * n;
     for (size_t j = 0; j < ny; j++)

@@ -26,15 +26,15 @@ typedef struct mw_map_scene {
         size_t set;
         double level;
         mw_outline line; /* above the level; only the stretches off the rim count */
-    } *line;
+    } * line;
 } mw_map_scene;
 
 mw_status mw_map_scene_make(const mw_map_panel *panel, const mw_outline_grid *grid, mw_map_scene *out, mw_error *err);
 void mw_map_scene_free(mw_map_scene *scene);
 
 typedef struct mw_map_frame {
-    double x0, y0, x1, y1;         /* on the page */
-    double p0, p1, v0, v1;         /* axis ends */
+    double x0, y0, x1, y1; /* on the page */
+    double p0, p1, v0, v1; /* axis ends */
 } mw_map_frame;
 
 double mw_frame_x(const mw_map_frame *f, double power_W);

@@ -1,12 +1,15 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * The process map as a file: checks, drawing to a temporary, dates and counters taken out, moved into place. */
+#define _POSIX_C_SOURCE 200809L
 #include "meltwright/mapplot.h"
 
 #include <ctype.h>
+#include <errno.h>
 #include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
+#include <unistd.h>
 
 #include "base/file.h"
 #include "present/map_canvas.h"
@@ -51,8 +54,8 @@ static mw_status check_picture(const mw_map_picture *p, mw_error *err)
         return mw_fail(err, MW_TOO_LARGE, NULL, 0, "%zu panels are more than the %d a map can hold", p->n_panel,
                        MW_MAP_MOST_PANELS);
     if (p->n_power > MOST_POINTS / p->n_speed)
-        return mw_fail(err, MW_TOO_LARGE, NULL, 0, "%zu x %zu points are more than the %d a map can hold", p->n_power,
-                       p->n_speed, MOST_POINTS);
+        return mw_fail(err, MW_TOO_LARGE, NULL, 0, "%zu x %zu points are more than the %d a map can hold", p->n_power, p->n_speed,
+                       MOST_POINTS);
     for (size_t k = 0; k < p->n_panel && status == MW_OK; k++)
         status = check_panel(&p->panels[k], err);
     return status;
@@ -98,20 +101,30 @@ static size_t plain_svg(char *bytes, size_t n)
     return to;
 }
 
+/* The drawing library does not report a full disk; each format ends in a mark of its own. */
+static bool complete(mw_picture_format format, const char *bytes, size_t n)
+{
+    static const char *const last[] = {"IEND\xae\x42\x60\x82", "</svg>", "%%EOF"};
+    while (format != MW_PICTURE_PNG && n > 0 && isspace((unsigned char)bytes[n - 1]))
+        n--;
+    const size_t length = strlen(last[format]);
+    return n >= length && memcmp(bytes + n - length, last[format], length) == 0;
+}
+
+/* PLplot has written to the temporary by name; what is final goes in through the stream that has been open on it. */
 static mw_status settle_bytes(mw_picture_format format, mw_file_out *out, mw_error *err)
 {
     char *bytes = NULL;
     size_t n = 0;
     mw_status status = mw_file_read(out->temporary, MOST_FILE_BYTES, &bytes, &n, err);
-    if (status == MW_OK && n == 0)
-        status = mw_fail(err, MW_CANNOT_WRITE, out->path, 0, "PLplot drew nothing");
+    if (status == MW_OK && !complete(format, bytes, n))
+        status = mw_fail(err, MW_CANNOT_WRITE, out->path, 0, "only a part of the picture could be written; is the disk full?");
     if (status == MW_OK && format == MW_PICTURE_PDF)
         blank_pdf_date(bytes, n);
     if (status == MW_OK && format == MW_PICTURE_SVG)
         n = plain_svg(bytes, n);
-    /* The stream was opened on the same file before PLplot wrote to it; it still stands at the beginning. */
-    if (status == MW_OK && (freopen(out->temporary, "wb", out->stream) == NULL || fwrite(bytes, 1, n, out->stream) != n))
-        status = mw_fail(err, MW_CANNOT_WRITE, out->path, 0, "writing failed");
+    if (status == MW_OK && (ftruncate(fileno(out->stream), 0) != 0 || fwrite(bytes, 1, n, out->stream) != n))
+        status = mw_fail(err, MW_CANNOT_WRITE, out->path, 0, "writing failed: %s", strerror(errno));
     free(bytes);
     return status;
 }
@@ -187,8 +200,12 @@ mw_status mw_map_shares(const mw_map_panel *panel, size_t n_power, const double 
                         const double speed_mm_per_s[], mw_map_share *share, mw_error *err)
 {
     memset(share, 0, sizeof *share);
-    const mw_map_picture p = {.n_power = n_power, .power_W = power_W, .n_speed = n_speed,
-                              .speed_mm_per_s = speed_mm_per_s, .n_panel = 1, .panels = panel};
+    const mw_map_picture p = {.n_power = n_power,
+                              .power_W = power_W,
+                              .n_speed = n_speed,
+                              .speed_mm_per_s = speed_mm_per_s,
+                              .n_panel = 1,
+                              .panels = panel};
     mw_map_fields f;
     mw_status status = check_picture(&p, err);
     if (status == MW_OK)

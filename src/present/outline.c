@@ -197,10 +197,14 @@ static size_t side_edge(const tracer *t, size_t i, size_t j, int q)
 {
     const size_t nx = t->grid->nx, ny = t->grid->ny, level = (nx - 1) * ny;
     switch (q) {
-    case 0: return j * (nx - 1) + i;
-    case 2: return (j + 1) * (nx - 1) + i;
-    case 1: return level + j * nx + i + 1;
-    default: return level + j * nx + i;
+    case 0:
+        return j * (nx - 1) + i;
+    case 2:
+        return (j + 1) * (nx - 1) + i;
+    case 1:
+        return level + j * nx + i + 1;
+    default:
+        return level + j * nx + i;
     }
 }
 
@@ -276,8 +280,8 @@ static bool rising(size_t n, const double v[])
     return n >= 2;
 }
 
-mw_status mw_outline_trace(const mw_outline_grid *grid, size_t n_field, const double *const field[],
-                           mw_outline *out, mw_error *err)
+mw_status mw_outline_trace(const mw_outline_grid *grid, size_t n_field, const double *const field[], mw_outline *out,
+                           mw_error *err)
 {
     memset(out, 0, sizeof *out);
     if (n_field < 1 || n_field > 2 || !rising(grid->nx, grid->x) || !rising(grid->ny, grid->y))

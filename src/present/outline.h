@@ -28,8 +28,8 @@ typedef struct mw_outline {
 /* Traces the region where fields 0 .. n_field-1 (1 or 2) are all positive. Each cell is cut into four triangles about
  * its centre (whose value is the mean of the corners), and the fields are linear in a triangle; so regions that part
  * the plane by the signs of the same fields meet without gap or overlap. Errors: MW_BAD_VALUE, MW_NO_MEMORY. */
-mw_status mw_outline_trace(const mw_outline_grid *grid, size_t n_field, const double *const field[],
-                           mw_outline *out, mw_error *err);
+mw_status mw_outline_trace(const mw_outline_grid *grid, size_t n_field, const double *const field[], mw_outline *out,
+                           mw_error *err);
 
 /* Area where fields 0 .. n_field-1 (1 to 3) are all positive, on the same triangles. */
 double mw_outline_overlap(const mw_outline_grid *grid, size_t n_field, const double *const field[]);

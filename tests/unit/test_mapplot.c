@@ -4,9 +4,11 @@
 #include "check.h"
 
 #include <dirent.h>
+#include <signal.h>
 #include <stdbool.h>
 #include <stdlib.h>
 #include <string.h>
+#include <sys/resource.h>
 #include <sys/stat.h>
 #include <unistd.h>
 
@@ -24,7 +26,7 @@ typedef struct scenario {
 } scenario;
 
 static const double energies[] = {40, 60, 80, 100};
-static const mw_map_mark marks[] = {{195, 800, "start #1"}, {280, 1200, NULL}, {5000, 1, "off the map"}};
+static const mw_map_mark marks[] = {{195, 800, "start #1", -1}, {280, 1200, NULL, 0}, {5000, 1, "off the map", -1}};
 static const char *const subtitle[] = {"invented fields, 100 % made up; '#' and \xc2\xb5 must show as they are"};
 
 static void fill(scenario *s, size_t k, double hatch_um, double layer_um)
@@ -41,8 +43,14 @@ static void fill(scenario *s, size_t k, double hatch_um, double layer_um)
             s->depth[k][at] = 1e6 * d;
         }
     s->contours[k] = (mw_map_contours){.name = "track depth", .unit = "um", .field = s->depth[k]};
-    s->panel[k] = (mw_map_panel){.hatch_um = hatch_um, .layer_um = layer_um, .lof = s->lof[k], .over = s->over[k],
-                                 .melt = s->melt[k], .balling = s->balling[k], .n_contour = 1, .contours = &s->contours[k]};
+    s->panel[k] = (mw_map_panel){.hatch_um = hatch_um,
+                                 .layer_um = layer_um,
+                                 .lof = s->lof[k],
+                                 .over = s->over[k],
+                                 .melt = s->melt[k],
+                                 .balling = s->balling[k],
+                                 .n_contour = 1,
+                                 .contours = &s->contours[k]};
 }
 
 static int make(void **state)
@@ -55,10 +63,20 @@ static int make(void **state)
     }
     for (size_t k = 0; k < PANELS; k++)
         fill(s, k, k % 2 == 0 ? 80 : 100, k < 2 ? 30 : 50);
-    s->picture = (mw_map_picture){.title = "Invented map", .n_subtitle = 1, .subtitle = subtitle, .footer = "a footer",
-                                  .n_power = N, .power_W = s->power, .n_speed = N, .speed_mm_per_s = s->speed,
-                                  .n_panel = PANELS, .panels = s->panel, .n_energy = 4, .energy_J_per_mm3 = energies,
-                                  .n_mark = 3, .marks = marks};
+    s->picture = (mw_map_picture){.title = "Invented map",
+                                  .n_subtitle = 1,
+                                  .subtitle = subtitle,
+                                  .footer = "a footer",
+                                  .n_power = N,
+                                  .power_W = s->power,
+                                  .n_speed = N,
+                                  .speed_mm_per_s = s->speed,
+                                  .n_panel = PANELS,
+                                  .panels = s->panel,
+                                  .n_energy = 4,
+                                  .energy_J_per_mm3 = energies,
+                                  .n_mark = 3,
+                                  .marks = marks};
     *state = s;
     return 0;
 }
@@ -197,6 +215,29 @@ static void test_unwritable(void **state)
     assert_int_equal(rmdir(folder), 0);
 }
 
+/* A limit on the size of files stands in for a full disk. */
+static void test_cut_short(void **state)
+{
+    const scenario *s = *state;
+    static const char *const names[] = {"map.png", "map.svg", "map.pdf"};
+    char folder[64];
+    new_folder(folder);
+    struct rlimit old;
+    assert_int_equal(getrlimit(RLIMIT_FSIZE, &old), 0);
+    void (*handler)(int) = signal(SIGXFSZ, SIG_IGN);
+    for (size_t k = 0; k < 3; k++) {
+        mw_error err;
+        const struct rlimit small = {.rlim_cur = 9000, .rlim_max = old.rlim_max};
+        assert_int_equal(setrlimit(RLIMIT_FSIZE, &small), 0);
+        const mw_status status = mw_map_draw(&s->picture, at(folder, names[k]), true, &err);
+        assert_int_equal(setrlimit(RLIMIT_FSIZE, &old), 0);
+        assert_int_equal(status, MW_CANNOT_WRITE);
+        assert_int_equal(files_in(folder), 0);
+    }
+    (void)signal(SIGXFSZ, handler);
+    assert_int_equal(rmdir(folder), 0);
+}
+
 static void test_existing_kept(void **state)
 {
     const scenario *s = *state;
@@ -297,8 +338,8 @@ static void test_shares(void **state)
         axis[i] = (double)i / (M - 1);
     for (size_t i = 0; i < M * M; i++) {
         const double x = axis[i % M], y = axis[i / M];
-        lof[i] = y - x - 0.3;  /* above the line: a triangle with legs of 0.7 */
-        over[i] = x - y - 0.6; /* below it: legs of 0.4 */
+        lof[i] = y - x - 0.3;      /* above the line: a triangle with legs of 0.7 */
+        over[i] = x - y - 0.6;     /* below it: legs of 0.4 */
         melt[i] = x + 1 - y - 0.2; /* upper left corner: legs of 0.2, cut out of the first */
     }
     const mw_map_panel p = {.hatch_um = 100, .layer_um = 40, .lof = lof, .over = over, .melt = melt};
@@ -317,8 +358,12 @@ static void test_ties(void **state)
     static const double axis[] = {1, 2};
     static const struct {
         double lof, over, melt, nominal, lack_of_fusion, keyhole, no_track;
-    } want[] = {{0, 0, 1, 1, 0, 0, 0}, {0.5, 0.5, 0, 0, 1, 0, 0}, {0, 0.5, 1, 0, 0, 1, 0}, {-1, 2, -1, 0, 0, 0, 1},
-                {INFINITY, -INFINITY, 1, 0, 1, 0, 0}, {INFINITY, INFINITY, 1, 0, 1, 0, 0}};
+    } want[] = {{0, 0, 1, 1, 0, 0, 0},
+                {0.5, 0.5, 0, 0, 1, 0, 0},
+                {0, 0.5, 1, 0, 0, 1, 0},
+                {-1, 2, -1, 0, 0, 0, 1},
+                {INFINITY, -INFINITY, 1, 0, 1, 0, 0},
+                {INFINITY, INFINITY, 1, 0, 1, 0, 0}};
     for (size_t k = 0; k < sizeof want / sizeof want[0]; k++) {
         double lof[4], over[4], melt[4];
         for (int i = 0; i < 4; i++) {
@@ -349,10 +394,13 @@ static void test_shares_sum(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(test_png),           cmocka_unit_test(test_svg),      cmocka_unit_test(test_pdf),
-        cmocka_unit_test(test_one_panel_size), cmocka_unit_test(test_unwritable), cmocka_unit_test(test_existing_kept),
-        cmocka_unit_test(test_endings),       cmocka_unit_test(test_bad_pictures), cmocka_unit_test(test_odd_fields),
-        cmocka_unit_test(test_shares),        cmocka_unit_test(test_ties),     cmocka_unit_test(test_shares_sum),
+        cmocka_unit_test(test_png),          cmocka_unit_test(test_svg),
+        cmocka_unit_test(test_pdf),          cmocka_unit_test(test_one_panel_size),
+        cmocka_unit_test(test_unwritable),   cmocka_unit_test(test_existing_kept),
+        cmocka_unit_test(test_cut_short),    cmocka_unit_test(test_endings),
+        cmocka_unit_test(test_bad_pictures), cmocka_unit_test(test_odd_fields),
+        cmocka_unit_test(test_shares),       cmocka_unit_test(test_ties),
+        cmocka_unit_test(test_shares_sum),
     };
     return cmocka_run_group_tests(tests, make, drop);
 }

@@ -16,15 +16,27 @@ static const double pi = 3.14159265358979323846;
 
 typedef double (*shape)(double x, double y);
 
-static double half_plane(double x, double y) { return 0.3 + 0.5 * x - y; }
-static double circle(double x, double y) { return 0.49 - x * x - y * y; }
+static double half_plane(double x, double y)
+{
+    return 0.3 + 0.5 * x - y;
+}
+static double circle(double x, double y)
+{
+    return 0.49 - x * x - y * y;
+}
 static double annulus(double x, double y)
 {
     const double r = hypot(x, y);
     return (0.8 - r) * (r - 0.4);
 }
-static double saddle(double x, double y) { return x * (y - 0.013); }
-static double minus_saddle(double x, double y) { return -saddle(x, y); }
+static double saddle(double x, double y)
+{
+    return x * (y - 0.013);
+}
+static double minus_saddle(double x, double y)
+{
+    return -saddle(x, y);
+}
 
 typedef struct sampled {
     double *x, *y, *f;
@@ -114,7 +126,8 @@ static void test_saddle(void **state)
     for (size_t n = 6; n < 30; n += 3) {
         size_t rings;
         const double a = traced_area(saddle, n, &rings), b = traced_area(minus_saddle, n, &rings);
-        /* Left and right lose and gain the same strip, so each part is half of the square of side 2; only the cell in the middle is approximate. */
+        /* Left and right lose and gain the same strip, so each part is half of the square of side 2; only the cell in the middle
+         * is approximate. */
         const double h = 2.0 / (double)(n + 2), w = 2 * 1.2 / sin(1.2) / (double)(n - 1), bound = h * w;
         if (!(fabs(a - 2) <= bound && fabs(b - 2) <= bound && fabs(a + b - 4) <= 1e-12))
             fail_msg("saddle, n = %zu: areas %.17g and %.17g, want 2 and 2 within %.3g", n, a, b, bound);
@@ -236,9 +249,9 @@ static void test_refusals(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(test_half_plane), cmocka_unit_test(test_curves),    cmocka_unit_test(test_saddle),
+        cmocka_unit_test(test_half_plane),   cmocka_unit_test(test_curves),    cmocka_unit_test(test_saddle),
         cmocka_unit_test(test_rings_closed), cmocka_unit_test(test_partition), cmocka_unit_test(test_blank),
-        cmocka_unit_test(test_simplify),   cmocka_unit_test(test_refusals),
+        cmocka_unit_test(test_simplify),     cmocka_unit_test(test_refusals),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

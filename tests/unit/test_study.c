@@ -245,6 +245,50 @@ static void margins_of_what_is_not_nominal_are_zero(void **state)
     assert_true(r.margins.power_up_pct == 0 && r.margins.power_down_pct == 0 && r.margins.speed_up_pct == 0 && r.margins.speed_down_pct == 0);
 }
 
+/* Every turn of an outlook, for nominal and other settings: just before it the verdict is the old one, just past it the one it names, and in
+ * power and speed it agrees with the margins. */
+static void an_outlook_names_the_verdict_beyond_each_turn(void **state)
+{
+    (void)state;
+    const mw_plan plan = plan_for(MW_MODEL_DEFAULT);
+    const mw_setting settings[] = {{200, 0.8, 110e-6, 40e-6, 80e-6, 293.15}, {120, 1.5, 120e-6, 50e-6, 80e-6, 293.15}, {380, 0.3, 80e-6, 30e-6, 80e-6, 293.15}};
+    const size_t offset[4] = {offsetof(mw_setting, power_W), offsetof(mw_setting, speed_m_per_s), offsetof(mw_setting, hatch_m), offsetof(mw_setting, layer_m)};
+    for (size_t i = 0; i < 3; i++) {
+        mw_result r;
+        mw_outlook o;
+        assert_true(mw_evaluate(&plan, &settings[i], true, &r, NULL) >= 0);
+        assert_int_equal(mw_outlook_at(&plan, &r, &o), MW_OK);
+        const mw_turn *const turn[4] = {o.power, o.speed, o.hatch, o.layer};
+        int found = 0;
+        for (int k = 0; k < 4; k++)
+            for (int up = 0; up < 2; up++) {
+                const mw_turn *t = &turn[k][up];
+                if (isnan(t->at))
+                    continue;
+                found++;
+                const double here = *(const double *)((const char *)&settings[i] + offset[k]), hair = up ? 2e-5 : -2e-5;
+                mw_setting before = settings[i], past = settings[i];
+                *(double *)((char *)&before + offset[k]) = t->at * (1 - hair);
+                *(double *)((char *)&past + offset[k]) = t->at * (1 + hair);
+                assert_true(up ? t->at > here : t->at < here);
+                CHECK_REL(t->change_pct, 100 * (t->at / here - 1), 1e-9);
+                assert_int_equal(verdict_at(&plan, past), t->beyond);
+                assert_int_equal(verdict_at(&plan, before) == MW_NOMINAL, r.judgement.verdict == MW_NOMINAL);
+                assert_true((t->beyond == MW_NOMINAL) != (r.judgement.verdict == MW_NOMINAL));
+            }
+        assert_true(found >= (r.judgement.verdict == MW_NOMINAL ? 6 : 2));
+        if (r.judgement.verdict == MW_NOMINAL) {
+            CHECK_NEAR(-o.power[0].change_pct, r.margins.power_down_pct, 1e-6);
+            CHECK_NEAR(o.speed[1].change_pct, r.margins.speed_up_pct, 1e-6);
+        }
+    }
+    mw_result alone;
+    mw_outlook o;
+    const mw_setting track = {200, 0.8, NAN, 0, 80e-6, 293.15};
+    assert_true(mw_evaluate(&plan, &track, true, &alone, NULL) >= 0);
+    assert_int_equal(mw_outlook_at(&plan, &alone, &o), MW_BAD_USAGE);
+}
+
 /* Published porosity of 316L against speed, minimum between two rising ends: 0.139 m/s 3.2 %, 0.174 2.15 %, 0.277 0.167 %, 0.350 0.74 %,
  * 0.413 3.75 %, 0.699 9.3 %; beam 70 um, hatch 124, layer 50; least absorbed power 34.2 W (tables published with Xie et al. 2022).
  * An order, not values: odds of lack of fusion rise with speed, of too much energy fall, and the best speed lies between the ends. */
@@ -406,6 +450,7 @@ int main(void)
         cmocka_unit_test(intervals_hold_the_prediction_and_keep_their_order),
         cmocka_unit_test(margins_are_where_the_verdict_flips),
         cmocka_unit_test(margins_of_what_is_not_nominal_are_zero),
+        cmocka_unit_test(an_outlook_names_the_verdict_beyond_each_turn),
         cmocka_unit_test(the_order_of_published_porosity_is_kept),
         cmocka_unit_test(a_sweep_is_its_settings_in_order),
         cmocka_unit_test(any_number_of_threads_gives_the_same_bytes),
