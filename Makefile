@@ -31,13 +31,14 @@ CLI_SRC  := $(sort $(wildcard src/cli/*.c))
 TEST_SRC := $(sort $(wildcard tests/unit/test_*.c))
 LIB_OBJ  := $(LIB_SRC:%.c=$(B)/%.o)
 CLI_OBJ  := $(CLI_SRC:%.c=$(B)/%.o)
+VAL_OBJ  := $(patsubst %.c,$(B)/%.o,$(sort $(wildcard tests/validation/*.c)))
 TESTS    := $(TEST_SRC:%.c=$(B)/%)
 HEADERS  := $(sort $(wildcard include/meltwright/*.h))
 PROGRAM  := $(B)/meltwright
 
 .DELETE_ON_ERROR:
 .SECONDARY:
-.PHONY: all demo check test plots coverage install uninstall clean help setup FORCE
+.PHONY: all demo check test plots validate coverage install uninstall clean help setup FORCE
 
 all: $(PROGRAM) $(B)/libmeltwright.so $(B)/meltwright.pc ## build library and program (set-up must have run once)
 
@@ -64,6 +65,10 @@ plots: setup ## redraw the gallery in plots/
 	@$(MAKE) --no-print-directory all
 	@sh tests/demo/gallery.sh $(PROGRAM)
 
+validate: setup ## accuracy against published measurements
+	@$(MAKE) --no-print-directory $(B)/validate
+	@$(B)/validate
+
 coverage: setup ## branch coverage of each storey (gcov)
 	@$(MAKE) --no-print-directory COV=1 test
 	@sh tests/coverage.sh build/cov
@@ -84,6 +89,10 @@ $(B)/libmeltwright.so: $(LIB_OBJ)
 $(B)/tests/unit/%: $(B)/tests/unit/%.o $(B)/libmeltwright.a
 	$(if $(V),,@echo '  link $@')
 	$(Q)$(CC) $(OMPF) $(INST) $(LDFLAGS) -o $@ $< $(B)/libmeltwright.a -lcmocka $(LIBS)
+
+$(B)/validate: $(VAL_OBJ) $(B)/libmeltwright.a
+	$(if $(V),,@echo '  link $@')
+	$(Q)$(CC) $(OMPF) $(INST) $(LDFLAGS) -o $@ $(VAL_OBJ) $(B)/libmeltwright.a $(LIBS)
 
 $(B)/src/present/%.o: ALLC += $(PLPLOT_C)
 
@@ -121,4 +130,4 @@ uninstall: ## remove what install put there
 clean: ## remove build/
 	rm -rf build
 
--include $(wildcard $(B)/src/*/*.d $(B)/tests/unit/*.d)
+-include $(wildcard $(B)/src/*/*.d $(B)/tests/*/*.d)

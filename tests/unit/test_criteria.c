@@ -191,18 +191,20 @@ static void stable_length_meets_its_reference(void **state)
     assert_true(isinf(mw_stable_length_ratio(pi / 2)) && isnan(mw_stable_length_ratio(0)) && isnan(mw_stable_length_ratio(4)));
 }
 
-/* The index is a rewriting of the fitted logits: bare -20.6 + 13.9 ln(L/W), powder 2.42 + 3.32 ln We + 0.69 t/30um. */
-static void balling_is_the_fitted_logit(void **state)
+/* The index is a rewriting of a logit: slope ln(L/W / ratio) on bare plate, slope ln(We / We50) + layer t/30um on powder. */
+static void balling_is_a_logit(void **state)
 {
     (void)state;
-    const mw_pool p = {.width_m = 90e-6, .length_m = 400e-6};
-    const double bare = -20.6 + 13.9 * log(400.0 / 90.0);
-    CHECK_NEAR(mw_balling_probability(mw_balling_index(&p, 1.1, 0, 7904, 1.593), 0), 1 / (1 + exp(-bare)), 2e-3);
-    const double weber = 7904 * 1.1 * 1.1 * 90e-6 / 1.593, powder = 2.42 + 3.32 * log(weber) + 0.69 * 40 / 30;
-    CHECK_NEAR(mw_balling_probability(mw_balling_index(&p, 1.1, 40e-6, 7904, 1.593), 40e-6), 1 / (1 + exp(-powder)), 2e-4);
+    const mw_balling_limits *l = mw_balling_constants();
+    const mw_pool p = {.width_m = 90e-6, .length_m = 480e-6};
+    const double bare = l->bare_slope * log(480.0 / 90.0 / l->bare_ratio);
+    CHECK_REL(mw_balling_probability(mw_balling_index(&p, 1.1, 0, 7904, 1.593), 0), 1 / (1 + exp(-bare)), 1e-12);
+    const double weber = 7904 * 1.1 * 1.1 * 90e-6 / 1.593, powder = l->weber_slope * log(weber / l->weber) + l->layer_slope * 40e-6 / l->layer_reference_m;
+    CHECK_REL(mw_balling_probability(mw_balling_index(&p, 1.1, 40e-6, 7904, 1.593), 40e-6), 1 / (1 + exp(-powder)), 1e-12);
     const mw_pool none = {0};
     assert_true(mw_balling_index(&none, 1, 0, 7904, 1.6) == 0 && mw_balling_probability(0, 0) == 0);
     CHECK_REL(mw_balling_probability(1, 30e-6), 0.5, 1e-15);
+    CHECK_REL(mw_balling_probability(1, 0), 0.5, 1e-15);
 }
 
 /* Worked rows of a flat pool: index and ratio -> the three probabilities (three decimals). */
@@ -271,7 +273,7 @@ int main(void)
         cmocka_unit_test(no_pool_and_missing_inputs),
         cmocka_unit_test(energy_densities_are_arithmetic),
         cmocka_unit_test(stable_length_meets_its_reference),
-        cmocka_unit_test(balling_is_the_fitted_logit),
+        cmocka_unit_test(balling_is_a_logit),
         cmocka_unit_test(verdict_meets_worked_rows),
         cmocka_unit_test(probabilities_sum_to_one_and_the_verdict_is_the_likeliest),
         cmocka_unit_test(every_threshold_says_what_it_rests_on),

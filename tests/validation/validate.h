@@ -1,0 +1,20 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * The accuracy tables: meltwright against published measurements. */
+#ifndef MELTWRIGHT_VALIDATE_H
+#define MELTWRIGHT_VALIDATE_H
+
+#include <stdio.h>
+
+#include "meltwright/study.h"
+
+void validate_tracks(void);
+void validate_cubes(void);
+void validate_balling(void);
+
+/* Prints the error and ends the program unless the status is a success. */
+void stop_on(mw_status status, const mw_error *err);
+/* The card of an alloy from alloys/; ends the program when there is none, unless `may_lack`. */
+mw_alloy *find_card(const char *name);
+mw_alloy *find_card_if_any(const char *name);
+
+#endif
