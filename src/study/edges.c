@@ -28,9 +28,16 @@ size_t mw_line_values(const double *value, size_t n, double *out)
     return k;
 }
 
-static double position(const mw_line *line, const mw_track *track)
+static double position(mw_factor factor, const mw_track *track)
 {
-    return line->factor == MW_ALONG_POWER ? track->power_W : track->speed_m_per_s;
+    return factor == MW_ALONG_POWER ? track->power_W : track->speed_m_per_s;
+}
+
+/* The track at another value of the factor. */
+static mw_status track_at(const mw_plan *plan, mw_factor factor, const mw_track *base, double value, mw_track *out)
+{
+    return factor == MW_ALONG_POWER ? mw_track_at(plan, value, base->speed_m_per_s, base->d4sigma_m, out)
+                                    : mw_track_at(plan, base->power_W, value, base->d4sigma_m, out);
 }
 
 /* Window distance of a track at a hatch and layer: positive inside. Only what the verdict needs. */
@@ -47,36 +54,29 @@ static double distance(const mw_plan *plan, const mw_track *track, double hatch_
     return mw_window_distance(&j);
 }
 
-/* Root of the window distance between two neighbouring tracks of different sign: Illinois false position in ln x, to 1e-7. */
-static mw_status refine(const mw_line *line, size_t k, double hatch_m, double layer_m, double fa, double fb, double *root)
+/* Root of the window distance between two tracks of different sign: Illinois false position in ln x, to 1e-7. */
+static mw_status refine(const mw_plan *plan, mw_factor factor, const mw_track *from, const mw_track *to, double hatch_m, double layer_m, double fa,
+                        double fb, double *root)
 {
-    double a = log(position(line, &line->track[k])), b = log(position(line, &line->track[k + 1]));
+    double a = log(position(factor, from)), b = log(position(factor, to));
     double x = b;
     for (int i = 0; i < 60 && fabs(b - a) > 1e-7; i++) {
         x = (a * fb - b * fa) / (fb - fa);
         if (!(x > fmin(a, b) && x < fmax(a, b)))
             x = (a + b) / 2;
         mw_track here;
-        const mw_track *base = &line->track[k];
-        const double value = exp(x);
-        const mw_status status = line->factor == MW_ALONG_POWER
-                                     ? mw_track_at(line->plan, value, base->speed_m_per_s, base->d4sigma_m, &here)
-                                     : mw_track_at(line->plan, base->power_W, value, base->d4sigma_m, &here);
+        const mw_status status = track_at(plan, factor, from, exp(x), &here);
         if (status < 0)
             return status;
-        const double f = distance(line->plan, &here, hatch_m, layer_m);
-        if (f == 0)
-            break;
+        const double f = distance(plan, &here, hatch_m, layer_m);
         if ((f > 0) == (fb > 0)) {
-            b = x;
-            fb = f;
             fa /= 2;
         } else {
             a = b;
             fa = fb;
-            b = x;
-            fb = f;
         }
+        b = x;
+        fb = f;
         if (fabs(f) < 1e-9)
             break;
     }
@@ -91,7 +91,8 @@ mw_status mw_edges_on(const mw_line *line, double hatch_m, double layer_m, mw_ed
     for (size_t k = 0; k < line->n; k++) {
         const double now = line->track[k].status < 0 ? NAN : distance(line->plan, &line->track[k], hatch_m, layer_m);
         if (k > 0 && !isnan(before) && !isnan(now) && (before > 0) != (now > 0) && out->n < MW_MOST_EDGES) {
-            const mw_status status = refine(line, k - 1, hatch_m, layer_m, before, now, &out->at[out->n]);
+            const mw_status status = refine(line->plan, line->factor, &line->track[k - 1], &line->track[k], hatch_m, layer_m, before, now,
+                                            &out->at[out->n]);
             if (status != MW_OK)
                 return status;
             out->n++;
@@ -113,38 +114,54 @@ void mw_margin_from(const mw_edges *edges, double value, double *down_pct, doubl
     }
 }
 
-mw_status mw_edges_along(const mw_plan *plan, const mw_result *r, mw_factor factor, mw_edges *out)
+mw_status mw_nearest_edge(const mw_plan *plan, const mw_result *r, mw_factor factor, bool up, double *edge)
 {
-    const double value = factor == MW_ALONG_POWER ? r->setting.power_W : r->setting.speed_m_per_s;
-    const size_t n = mw_line_values(&value, 1, NULL);
-    double *at = malloc(n * sizeof *at);
-    mw_track *track = malloc(n * sizeof *track);
-    mw_status status = at == NULL || track == NULL ? MW_NO_MEMORY : MW_OK;
-    if (status == MW_OK) {
-        (void)mw_line_values(&value, 1, at);
-        for (size_t i = 0; i < n; i++)
-            (void)mw_track_at(plan, factor == MW_ALONG_POWER ? at[i] : r->setting.power_W,
-                              factor == MW_ALONG_SPEED ? at[i] : r->setting.speed_m_per_s, r->setting.d4sigma_m, &track[i]);
-        const mw_line line = {plan, factor, track, n};
-        status = mw_edges_on(&line, r->setting.hatch_m, r->setting.layer_m, out);
+    const double step = log(MW_LINE_RATIO);
+    mw_track before, next;
+    *edge = NAN;
+    mw_status status = mw_track_at(plan, r->setting.power_W, r->setting.speed_m_per_s, r->setting.d4sigma_m, &before);
+    if (status < 0)
+        return status;
+    const double value = position(factor, &before);
+    double f = distance(plan, &before, r->setting.hatch_m, r->setting.layer_m);
+    /* The same absolute places as a line has, from the setting outward, until the first change. */
+    for (long i = (long)(up ? floor(log(value) / step) + 1 : ceil(log(value) / step) - 1);; i += up ? 1 : -1) {
+        const double at = exp((double)i * step);
+        status = track_at(plan, factor, &before, at, &next);
+        if (status < 0)
+            return status;
+        const double g = distance(plan, &next, r->setting.hatch_m, r->setting.layer_m);
+        if ((f > 0) != (g > 0)) {
+            status = refine(plan, factor, &before, &next, r->setting.hatch_m, r->setting.layer_m, f, g, edge);
+            if (!(*edge <= value * MW_MARGIN_REACH && *edge >= value / MW_MARGIN_REACH))
+                *edge = NAN;
+            return status;
+        }
+        if (at >= value * MW_MARGIN_REACH || at <= value / MW_MARGIN_REACH)
+            return MW_OK;
+        before = next;
+        f = g;
     }
-    free(track);
-    free(at);
-    return status;
 }
 
-mw_status mw_margins_at(const mw_plan *plan, const mw_result *result, mw_margins *out)
+static mw_status margin_along(const mw_plan *plan, const mw_result *r, mw_factor factor, double value, double *down_pct, double *up_pct)
+{
+    double down, up;
+    mw_status status = mw_nearest_edge(plan, r, factor, false, &down);
+    if (status == MW_OK)
+        status = mw_nearest_edge(plan, r, factor, true, &up);
+    if (status != MW_OK)
+        return status;
+    *down_pct = 100 * (1 - down / value);
+    *up_pct = 100 * (up / value - 1);
+    return MW_OK;
+}
+
+mw_status mw_margins_at(const mw_plan *plan, const mw_result *r, mw_margins *out)
 {
     *out = (mw_margins){0, 0, 0, 0};
-    if (result->judgement.verdict != MW_NOMINAL)
+    if (r->judgement.verdict != MW_NOMINAL)
         return MW_OK;
-    mw_edges edges;
-    mw_status status = mw_edges_along(plan, result, MW_ALONG_POWER, &edges);
-    if (status == MW_OK) {
-        mw_margin_from(&edges, result->setting.power_W, &out->power_down_pct, &out->power_up_pct);
-        status = mw_edges_along(plan, result, MW_ALONG_SPEED, &edges);
-    }
-    if (status == MW_OK)
-        mw_margin_from(&edges, result->setting.speed_m_per_s, &out->speed_down_pct, &out->speed_up_pct);
-    return status;
+    const mw_status status = margin_along(plan, r, MW_ALONG_POWER, r->setting.power_W, &out->power_down_pct, &out->power_up_pct);
+    return status != MW_OK ? status : margin_along(plan, r, MW_ALONG_SPEED, r->setting.speed_m_per_s, &out->speed_down_pct, &out->speed_up_pct);
 }

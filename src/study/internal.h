@@ -36,8 +36,8 @@ typedef struct mw_edges {
 } mw_edges;
 mw_status mw_edges_on(const mw_line *line, double hatch_m, double layer_m, mw_edges *out);
 
-/* The edges along one factor through a judged result. */
-mw_status mw_edges_along(const mw_plan *plan, const mw_result *result, mw_factor factor, mw_edges *out);
+/* The nearest edge above or below a judged result, searched outward from it; NaN beyond a factor of MW_MARGIN_REACH. */
+mw_status mw_nearest_edge(const mw_plan *plan, const mw_result *result, mw_factor factor, bool up, double *edge);
 
 /* Percent from `value` down and up to the nearest edge; NaN beyond a factor of MW_MARGIN_REACH. */
 void mw_margin_from(const mw_edges *edges, double value, double *down_pct, double *up_pct);

@@ -26,16 +26,14 @@ static void set_turn(const mw_plan *plan, const mw_setting *from, size_t offset,
 
 static mw_status turn_on_line(const mw_plan *plan, const mw_result *r, mw_factor factor, size_t offset, double value, mw_turn *turn)
 {
-    mw_edges edges;
-    double down, up;
-    const mw_status status = mw_edges_along(plan, r, factor, &edges);
-    if (status != MW_OK)
-        return status;
-    mw_margin_from(&edges, value, &down, &up);
-    if (!isnan(down))
-        set_turn(plan, &r->setting, offset, value, value * (1 - down / 100), &turn[0]);
-    if (!isnan(up))
-        set_turn(plan, &r->setting, offset, value, value * (1 + up / 100), &turn[1]);
+    for (int up = 0; up < 2; up++) {
+        double edge;
+        const mw_status status = mw_nearest_edge(plan, r, factor, up == 1, &edge);
+        if (status != MW_OK)
+            return status;
+        if (!isnan(edge))
+            set_turn(plan, &r->setting, offset, value, edge, &turn[up]);
+    }
     return MW_OK;
 }
 
