@@ -9,8 +9,7 @@ for storey in base material model criteria study present cli; do
         [ -e "$o" ] && gcov -b -n -o "$(dirname "$o")" "$o" 2>/dev/null
     done | awk -v storey="$storey" '
         /^File / { mine = index($0, "src/" storey "/") && $0 ~ /\.c.$/ }
-        /^$/ { mine = 0 }
         mine && /^Lines executed:/ { split($0, a, /[:%]| of /); lines += $NF; hit += a[2] / 100 * $NF }
-        mine && /^Taken at least once:/ { split($0, a, /[:%]| of /); branches += $NF; taken += a[2] / 100 * $NF }
+        mine && /^Taken at least once:/ { split($0, a, /[:%]| of /); branches += $NF; taken += a[2] / 100 * $NF; mine = 0 }
         END { if (lines) printf "%-10s %8d %7.1f%% %9d %7.1f%%\n", storey, lines, 100 * hit / lines, branches, 100 * taken / branches }'
 done

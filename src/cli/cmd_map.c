@@ -10,7 +10,7 @@
 #include "meltwright/text.h"
 #include "meltwright/version.h"
 
-enum { CONTOUR_KINDS = 3, MOST_ENERGY_LINES = 12, MOST_MARKS = 200 };
+enum { FEW = 17, CONTOUR_KINDS = 3, MOST_ENERGY_LINES = 12, MOST_MARKS = 200 };
 
 static const struct {
     const char *word, *name, *unit;
@@ -277,6 +277,22 @@ static mw_status take_cell(void *to, const mw_result *r)
 
 /* ---- showing ---- */
 
+/* What of the map lies beyond the published record, from its two outer corners; "" where nothing does. */
+static void beyond_record(const map_run *m, char *text, size_t size)
+{
+    const mw_grid *g = &m->axes.grid;
+    const mw_setting low = {g->power_W[0], g->speed_m_per_s[0], g->hatch_m[0], g->layer_m[0], g->d4sigma_m, g->preheat_K};
+    const mw_setting high = {g->power_W[g->n_power - 1], g->speed_m_per_s[g->n_speed - 1], g->hatch_m[g->n_hatch - 1], g->layer_m[g->n_layer - 1],
+                             NAN, NAN}; /* beam and preheat are said once */
+    size_t used = mw_setting_outside(&m->plan, &low, text, size);
+    if (used > 0 && used + 2 < size && mw_setting_outside(&m->plan, &high, NULL, 0) > 0) {
+        memcpy(text + used, ", ", 3);
+        used += 2;
+    }
+    if (used < size)
+        (void)mw_setting_outside(&m->plan, &high, text + used, size - used);
+}
+
 static mw_status draw(map_run *m, mw_error *err)
 {
     const mw_grid *g = &m->axes.grid;
@@ -286,7 +302,10 @@ static mw_status draw(map_run *m, mw_error *err)
     (void)snprintf(beam, sizeof beam, "beam %.4g \xC2\xB5m (D4sigma), plate at %.4g \xC2\xB0" "C, model %s", 1e6 * g->d4sigma_m, g->preheat_K - 273.15,
                    mw_model_word(m->plan.model));
     (void)snprintf(footer, sizeof footer, "meltwright %s, card %s: an estimate, confirm with coupons", mw_version(), m->alloy->hash);
-    const char *const subtitle[] = {beam};
+    char outside[400], beyond[440];
+    beyond_record(m, outside, sizeof outside);
+    (void)snprintf(beyond, sizeof beyond, "beyond the published record: %s", outside);
+    const char *const subtitle[] = {beam, beyond};
     mw_map_panel panels[MW_MAP_MOST_PANELS];
     mw_map_contours sets[MW_MAP_MOST_PANELS][CONTOUR_KINDS];
     for (size_t p = 0; p < m->n_panel; p++) {
@@ -298,7 +317,7 @@ static mw_status draw(map_run *m, mw_error *err)
         panels[p] = (mw_map_panel){1e6 * g->hatch_m[p / g->n_layer], 1e6 * g->layer_m[p % g->n_layer], f->lof, f->over, f->melt, f->balling, n, sets[p]};
     }
     const mw_map_picture picture = {.title = title,
-                                    .n_subtitle = 1,
+                                    .n_subtitle = outside[0] != '\0' ? 2 : 1,
                                     .subtitle = subtitle,
                                     .footer = footer,
                                     .n_power = g->n_power,
@@ -348,6 +367,10 @@ static mw_status print_text(const map_run *m, FILE *to, mw_error *err)
         (void)fprintf(to, "   %.4g W, %.4g mm/s: nominal %.2f, %.0f x %.0f um wide x deep, %.3g cm3/h\n", r.setting.power_W, 1e3 * r.setting.speed_m_per_s,
                       r.judgement.p_nominal, 1e6 * r.pool.width_m, 1e6 * r.pool.depth_m, r.build_rate_m3_per_s * 3.6e9);
     }
+    char outside[400];
+    beyond_record(m, outside, sizeof outside);
+    if (outside[0] != '\0')
+        (void)fprintf(to, "\nbeyond what published tracks and cubes cover, and a guess there: %s\n", outside);
     return MW_OK;
 }
 
@@ -383,7 +406,11 @@ static mw_status print_json(const map_run *m, FILE *to, const mw_provenance *pro
         }
         (void)fputc('}', to);
     }
-    (void)fputs("\n]}\n", to);
+    char outside[400];
+    beyond_record(m, outside, sizeof outside);
+    (void)fputs("\n],\n\"beyond_published_record\": ", to);
+    mw_json_string(to, outside);
+    (void)fputs("}\n", to);
     return MW_OK;
 }
 
@@ -439,6 +466,8 @@ static mw_status run(map_run *m, mw_error *err)
         status = print_map(m, format, threads, err);
     if (status == MW_OK && given(m->args, OPT_OUTPUT))
         remark(m->args, "picture in %s", m->args->value[OPT_OUTPUT]);
+    if (status == MW_OK && given(m->args, OPT_OUTPUT) && (m->axes.grid.n_power < FEW || m->axes.grid.n_speed < FEW))
+        remark(m->args, "few values make coarse outlines; a range without COUNT takes 129");
     return status;
 }
 

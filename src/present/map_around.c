@@ -101,7 +101,7 @@ void mw_map_page_draw(const mw_canvas *c, const mw_map_picture *picture, const m
     mw_text_style axis = {.size = MW_SIZE_AXIS, .anchor = 0.5, .colour = mw_ink};
     mw_canvas_text(c, 0.5 * (page->axes_x0 + page->axes_x1), page->axes_y0 - 74, &axis, "laser power (W)");
     axis.upward = true;
-    mw_canvas_text(c, page->axes_x0 - 112, 0.5 * (page->axes_y0 + page->axes_y1), &axis, "scan speed (mm/s)");
+    mw_canvas_text(c, page->speed_title_x, 0.5 * (page->axes_y0 + page->axes_y1), &axis, "scan speed (mm/s)");
     for (size_t k = 0; k < page->n_key; k++)
         draw_key(c, &page->key[k]);
 }

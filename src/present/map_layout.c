@@ -187,7 +187,9 @@ typedef struct measures {
 static measures measure(const mw_map_picture *p, const mw_map_page *page)
 {
     const double energy = p->n_energy > 0 ? 1 : 0;
-    measures m = {.left = EDGE + 128, .right = EDGE + energy * 140, .head = 50 + energy * 32};
+    /* A fifth digit on the speed axis takes its own room. */
+    const double fifth_digit = p->speed_mm_per_s[p->n_speed - 1] >= 1e4 ? 18 : 0;
+    measures m = {.left = EDGE + 128 + fifth_digit, .right = EDGE + energy * 140 + (p->power_W[p->n_power - 1] >= 1e3 ? 14 : 0), .head = 50 + energy * 32};
     m.gap_x = 84 + energy * 90;
     m.gap_y = m.head + 36;
     if (page->columns == 1)
@@ -250,6 +252,7 @@ void mw_map_page_make(const mw_map_picture *p, const mw_map_scene scene[], mw_ma
     place_frames(p, page, &m, column, row, top);
     page->head_y = m.head - 24;
     page->axes_x0 = m.left;
+    page->speed_title_x = EDGE + 16;
     page->axes_x1 = page->width - m.right;
     page->axes_y1 = top;
     page->axes_y0 = foot;

@@ -31,7 +31,8 @@ typedef struct mw_map_page {
     mw_page_line line[MW_PAGE_LINES];
     mw_page_key key[MW_PAGE_KEYS];
     double head_y;                             /* of panel titles, above a frame */
-    double axes_x0, axes_x1, axes_y0, axes_y1; /* around all frames */
+    double axes_x0, axes_x1, axes_y0, axes_y1;
+    double speed_title_x; /* middle line of the title of the speed axis */ /* around all frames */
 } mw_map_page;
 
 /* Which regions and lines come up in any panel decides what the legend holds. */

@@ -31,7 +31,7 @@ static void heading(FILE *to, const mw_plan *plan, const mw_setting *s)
 
 static void size_line(FILE *to, const char *name, double value, double lo, double hi)
 {
-    (void)fprintf(to, "  %-10s %8.4g um", name, um(value));
+    (void)fprintf(to, um(value) < 9999.5 ? "  %-10s %8.4g um" : "  %-10s %8.0f um", name, um(value));
     if (!isnan(lo))
         (void)fprintf(to, "    %4.0f to %4.0f um in 9 of 10 tracks", um(lo), um(hi));
     (void)fputc('\n', to);
@@ -182,7 +182,7 @@ void mw_track_text(FILE *to, const mw_plan *plan, const mw_result *r, const mw_o
     char outside[512];
     heading(to, plan, &r->setting);
     if (r->status == MW_NO_MELT) {
-        (void)fprintf(to, "\nno track: %s", mw_status_sentence(MW_NO_MELT));
+        (void)fprintf(to, "\nno track: the surface does not reach melting");
         if (!isnan(r->pool.peak_temperature_K))
             (void)fprintf(to, " (peak %.0f K, solidus %.0f K)", r->pool.peak_temperature_K, plan->melt.isotherm_K);
         (void)fputc('\n', to);

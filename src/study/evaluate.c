@@ -64,7 +64,7 @@ size_t mw_setting_outside(const mw_plan *plan, const mw_setting *setting, char *
 {
     size_t used = 0;
     if (size > 0)
-        text[0] = '\0';
+        text[0] = '\0'; /* with size 0 the text may be NULL: only the length is wanted */
     if (plan->check_case)
         return 0; /* a check case is mathematics, not a forecast */
     for (size_t i = 0; i < sizeof covered / sizeof *covered; i++) {
@@ -72,7 +72,7 @@ size_t mw_setting_outside(const mw_plan *plan, const mw_setting *setting, char *
         if (out == 0)
             continue;
         const double v = *(const double *)((const char *)setting + covered[i].offset);
-        const int n = snprintf(text + (used < size ? used : size), used < size ? size - used : 0, "%s%s %.6g %s is %s %g %s",
+        const int n = snprintf(used < size ? text + used : NULL, used < size ? size - used : 0, "%s%s %.6g %s is %s %g %s",
                                used > 0 ? ", " : "", covered[i].name, v * covered[i].to_trade - covered[i].shift, covered[i].unit,
                                out < 0 ? "below" : "above",
                                (out < 0 ? covered[i].low : covered[i].high) * covered[i].to_trade - covered[i].shift, covered[i].unit);
