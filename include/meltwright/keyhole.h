@@ -20,6 +20,7 @@ typedef struct mw_keyhole_constants {
     double gate_exponent;    /* how fast the cavity opens above the onset: 1 - s^-exponent */
     double blend_exponent;   /* melt depth from conduction depth and cavity depth */
     double layer_factor;     /* share of the powder layer that takes depth from the plate */
+    double flow_widening;    /* melt flow makes the pool this much wider, and its conduction depth this much smaller */
 } mw_keyhole_constants;
 
 extern const mw_keyhole_constants mw_keyhole_defaults;

@@ -9,7 +9,7 @@
 static const struct {
     double below_onset_index; /* class: onset index below this */
     double width, depth;
-} residual[] = {{1.0, 0.25, 0.30}, {1.5, 0.17, 0.42}, {INFINITY, 0.15, 0.40}};
+} residual[] = {{1.0, 0.25, 0.35}, {1.5, 0.15, 0.45}, {INFINITY, 0.15, 0.40}};
 static const double residual_length = 0.20; /* ten settings of one institution only */
 
 /* Cards fitted on tracks state 10 % for the coupling, and that is inside the residuals; what a card states beyond it is added. */

