@@ -8,6 +8,10 @@
 #include <stdlib.h>
 #include <string.h>
 
+#ifdef _OPENMP
+#include <omp.h>
+#endif
+
 #include "meltwright/text.h"
 
 static int exit_code(mw_status status)
@@ -163,7 +167,11 @@ mw_status read_beam(const arguments *args, bool required, double *d4sigma_m, mw_
 mw_status read_threads(const arguments *args, int *out, mw_error *err)
 {
     double n = 0;
-    *out = 0;
+#ifdef _OPENMP
+    *out = omp_get_num_procs();
+#else
+    *out = 1;
+#endif
     const mw_status status = read_quantity(args, OPT_THREADS, MW_PLAIN, &n, err);
     if (status != MW_OK || !given(args, OPT_THREADS))
         return status;

@@ -35,7 +35,7 @@ enum { ON_CARD = 1, ON_TRACK = 2, ON_SWEEP = 4, ON_MAP = 8, ON_GRIDS = ON_SWEEP 
     X(FORMAT, "format", 0, true, ON_ALL, "WORD", NULL, "text, csv or json")                                                                \
     X(OUTPUT, "output", 'o', true, ON_ALL, "FILE", NULL, "write here instead of standard output; map: .svg, .png or .pdf")                 \
     X(FORCE, "force", 0, false, ON_ALL, NULL, NULL, "replace a file that exists")                                                          \
-    X(THREADS, "threads", 0, true, ON_MODELS, "N", "all cores", "threads; the result does not depend on it")                                \
+    X(THREADS, "threads", 0, true, ON_MODELS, "N", "all cores", "threads for grids and tables; the result does not depend on it")                                \
     X(QUIET, "quiet", 'q', false, ON_ALL, NULL, NULL, "no remarks on standard error")                                                      \
     X(HELP, "help", 'h', false, ON_ALL, NULL, NULL, "this text")
 

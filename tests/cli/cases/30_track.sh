@@ -90,3 +90,8 @@ awk -F, 'function off(a, b) { return (a - b) / b < 0 ? (b - a) / b : (a - b) / b
       e = off($at["depth_um"], $at["want_width"] * 5e5); if (e > worst) worst = e
       e = off($at["length_um"], $at["want_length"] * 1e6); if (e > worst) worst = e }
     END { printf "%d rows, worst relative error %g\n", n, worst; exit !(n >= 30 && worst < 1e-10) }' got.csv >out && pass "rosenthal reference rows through the table" || fail 'rosenthal reference rows' ''
+# More rows than a batch holds, on one thread and several: the same bytes, all rows, in order.
+awk 'BEGIN { print "n,power_W,speed_mm_per_s,hatch_um,layer_um"; for (i = 1; i <= 1100; i++) printf "%d,%d,%d,%d,%d\n", i, 80 + i % 37 * 10, 300 + i % 53 * 30, 80 + i % 5 * 10, 30 + i % 3 * 10 }' >many.csv
+for t in 1 2 5; do "$program" track --from many.csv --alloy 718 --d4sigma 80 --threads $t --quiet >many$t.csv; done
+cmp -s many1.csv many2.csv && cmp -s many1.csv many5.csv && pass 'table: same bytes on any number of threads' || fail 'table: same bytes on any number of threads' ''
+[ "$(tail -n +2 many1.csv | cut -d, -f1 | tr '\n' ' ')" = "$(seq -s ' ' 1 1100) " ] && pass 'table: every row once, in order' || fail 'table: every row once, in order' ''
