@@ -21,7 +21,8 @@ double mw_gaussian_log_integral(double x, double y, double z, double peclet);
 double mw_gaussian_peak(double peclet, double *at_x);
 
 /* Pool for B and P in units of sigma: width, depth, length, front, back, width_at, depth_at are filled (all in sigma);
- * peak_at too; temperatures are NaN. Returns MW_OK, MW_NO_MELT (all lengths zero) or MW_NO_CONVERGENCE. */
+ * peak_at too; temperatures are NaN. Returns MW_OK, MW_NO_MELT (all lengths zero; also where B exceeds the least melting
+ * strength by less than one part in 1e12) or MW_NO_CONVERGENCE. */
 mw_status mw_gaussian_pool_scaled(double strength, double peclet, mw_pool *out);
 
 /* The whole pool in SI; relative accuracy 1e-7 or better in width, depth and length over 20-1500 W, 0.02-10 m/s,

@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
- * Pool of a moving Gaussian source: peak, tips, widest and deepest section, each a small Newton problem on exact derivatives, with a
- * bracket around it so that no start can send it astray. Lengths in sigma; T. W. Eagar, N.-S. Tsai, Weld. J. 62 (1983) 346-s. */
+ * Pool of a moving Gaussian source: peak, tips, widest and deepest section, each a small Newton problem on exact derivatives,
+ * with a bracket around it so that no start can send it astray. Lengths in sigma; T. W. Eagar, N.-S. Tsai, Weld. J. 62 (1983)
+ * 346-s. */
 #include "meltwright/gaussian.h"
 
 #include <math.h>
@@ -12,8 +13,15 @@
 static const double pi = 3.14159265358979323846;
 
 enum { MOST_STEPS = 80, SCAN = 40 };
-/* Depths below this (in sigma) are found through the drop of I from the surface, where I itself would cancel. */
-static const double SHALLOW = 0.02, NEAR = 4;
+/* I falls by less than depth * sqrt(P |x|) of itself: depths below this are the surface (and z^2 does not underflow above it). */
+static const double NO_DEPTH = 1e-25;
+/* I < 1/distance: nothing is felt here, and squares do not overflow before it. */
+static const double NOWHERE = 1e100;
+
+/* ln(B I) carries a rounding error of some 1e-15, a share of ln s: sizes are known to that share and no better. Newton doubles
+ * the digits, so a change of 1e-9 is the last that matters. A pool with ln s below 1e-12 is smaller than 2e-6 sigma, less than an
+ * atom's width for any beam in use, and B itself is hardly known to that: it counts as none. */
+static const double SETTLED = 1e-9, ROUNDING = 2e-14, LEAST_EXCESS = 1e-12;
 
 static const mw_pool no_pool = {NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN};
 
@@ -40,26 +48,28 @@ mw_status mw_gaussian_numbers(const mw_source *source, const mw_medium *medium, 
 
 double mw_gaussian_log_integral(double x, double y, double z, double peclet)
 {
-    if (!(peclet >= 0) || isnan(x) || isnan(y) || isnan(z))
+    if (!(peclet >= 0) || isinf(peclet) || isnan(x) || isnan(y) || isnan(z))
         return NAN;
+    if (fmax(fabs(x), fmax(fabs(y), fabs(z))) > NOWHERE)
+        return -INFINITY;
     const double p = usable_peclet(peclet), depth = fabs(z);
     mw_moments m;
-    if (depth == 0) {
+    if (depth < NO_DEPTH) {
         mw_gaussian_surface(x, y * y, p, &m);
         return m.log_i;
     }
-    /* y enters only through A2 = (x-P)^2 + y^2: move x until A2 is right without it, then mend the term 2P(x-P). */
-    const double moved = p - hypot(x - p, y), mend = -p * (x - moved);
-    if (depth < SHALLOW && fabs(moved) < NEAR) {
-        mw_gaussian_surface(moved, 0, p, &m);
-        return m.log_i + log1p(-mw_gaussian_drop(moved, depth, p, m.log_i)) + mend;
-    }
-    mw_gaussian_below(moved, depth, p, &m);
-    return m.log_i + mend;
+    /* y enters only through A2 = (x-P)^2 + y^2: move x back until A2 is right without it, then mend the term 2P(x-P). */
+    const double a = hypot(x - p, y), shift = x < p ? y * y / (a + (p - x)) : a + (x - p);
+    mw_gaussian_below(x - shift, depth, p, &m);
+    return m.log_i - p * shift;
 }
 
 double mw_gaussian_peak(double peclet, double *at_x)
 {
+    if (at_x != NULL)
+        *at_x = NAN;
+    if (!(peclet >= 0) || isinf(peclet))
+        return NAN;
     const double p = usable_peclet(peclet);
     /* The peak lies between 0 and -0.763 sigma (fast limit); Newton on d ln I/dX from a rational guess. */
     double x = -0.763 * p / (p + 0.85), low = -1, high = 0;
@@ -86,6 +96,7 @@ double mw_gaussian_peak(double peclet, double *at_x)
 
 typedef struct problem {
     double p, log_b, peak_at, log_s; /* log_s = ln(B Imax) > 0 */
+    double settled;                  /* relative change of a size at which Newton has nothing left to gain */
     double front, back;
 } problem;
 
@@ -123,14 +134,13 @@ static bool find_tip(const problem *q, double side, double guess, double *tip)
             next = isinf(outside) ? 2 * d : (inside + outside) / 2;
         const double change = fabs(next - d);
         d = next;
-        /* Newton doubles the digits: a change of 1e-8 leaves an error near 1e-16. */
-        if (change <= (newton ? 1e-8 : 2e-16) * d) {
+        if (change <= (newton ? q->settled : 2e-16) * d) {
             *tip = q->peak_at + side * d;
             return true;
         }
     }
     *tip = q->peak_at + side * d;
-    return fabs(outside - inside) <= 1e-12 * d;
+    return fabs(outside - inside) <= fmax(1e-12, q->settled) * d;
 }
 
 /* ---- the outline at a fixed x ----
@@ -140,37 +150,29 @@ typedef struct outline {
     bool across;
 } outline;
 
-static void moments_at(const outline *o, double x, double r, mw_moments *m)
+/* Excess ln(B I) at (x, r), and the moments there. */
+static double excess(const outline *o, double x, double r, mw_moments *m)
 {
     if (o->across)
         mw_gaussian_surface(x, r * r, o->of->p, m);
     else
         mw_gaussian_below(x, r, o->of->p, m);
-}
-
-/* Excess ln(B I) at (x, r) and its slope in r. Small depths go through the drop from the surface, free of cancellation. */
-static double excess(const outline *o, double x, double r, double surface, mw_moments *m)
-{
-    moments_at(o, x, r, m);
-    if (!o->across && r < SHALLOW && fabs(x) < NEAR) {
-        const double log_i = surface - o->of->log_b;
-        return surface + log1p(-mw_gaussian_drop(x, r, o->of->p, log_i));
-    }
     return m->log_i + o->of->log_b;
 }
 
-/* r(x): half width or depth of the outline at x, 0 outside the pool. *slope = dr/dx. */
+/* r(x): half width or depth of the outline at x, 0 outside the pool. *slope = dr/dx (slope may be NULL). */
 static double edge_at(const outline *o, double x, double guess, double tolerance, double *slope)
 {
     mw_moments m;
     mw_gaussian_surface(x, 0, o->of->p, &m);
     const double surface = m.log_i + o->of->log_b;
-    *slope = 0;
+    if (slope != NULL)
+        *slope = 0;
     if (!(surface > 0))
         return 0;
     double low = 0, high = INFINITY, r = guess > 0 ? guess : o->across ? sqrt(2 * surface / m.s) : surface;
     for (int i = 0; i < MOST_STEPS; i++) {
-        const double f = excess(o, x, r, surface, &m);
+        const double f = excess(o, x, r, &m);
         const double by_r = -r * m.t;
         if (f > 0)
             low = r;
@@ -181,28 +183,26 @@ static double edge_at(const outline *o, double x, double guess, double tolerance
             next = isinf(high) ? 2 * r : (low + high) / 2;
         const double change = fabs(next - r);
         r = next;
-        if (change < tolerance * r)
+        if (change < fmax(tolerance, o->of->settled) * r)
             break;
     }
-    moments_at(o, x, r, &m);
-    *slope = -m.g / (r * m.t);
+    if (slope != NULL) {
+        (void)excess(o, x, r, &m);
+        *slope = -m.g / (r * m.t);
+    }
     return r;
 }
 
-/* Two-variable Newton on {ln(B I) = 0, I_X = 0} from (x, r), to the last digits. False when it leaves the pool or does not settle. */
+/* Two-variable Newton on {ln(B I) = 0, I_X = 0} from (x, r), to the last digits. False when it leaves the pool or does not
+ * settle on a maximum. */
 static bool polish(const outline *o, double *x, double *r)
 {
     double px = *x, pr = *r;
     for (int i = 0; i < 30; i++) {
-        mw_moments m, top;
-        double surface = 0;
-        if (!o->across && pr < SHALLOW) {
-            mw_gaussian_surface(px, 0, o->of->p, &top);
-            surface = top.log_i + o->of->log_b;
-        }
-        const double f1 = excess(o, px, pr, surface, &m), f2 = m.g;
-        const double a = -m.g, b = -pr * m.t;                                   /* d f1 / d(x, r) */
-        const double c = m.s - m.gg + m.g * m.g, d = -pr * (m.gt - m.g * m.t);  /* d f2 / d(x, r) */
+        mw_moments m;
+        const double f1 = excess(o, px, pr, &m), f2 = m.g;
+        const double a = -m.g, b = -pr * m.t;                                  /* d f1 / d(x, r) */
+        const double c = m.s - m.gg + m.g * m.g, d = -pr * (m.gt - m.g * m.t); /* d f2 / d(x, r) */
         const double det = a * d - b * c;
         const double dx = (f1 * d - f2 * b) / det, dr = (f2 * a - f1 * c) / det;
         double damp = 1;
@@ -212,10 +212,10 @@ static bool polish(const outline *o, double *x, double *r)
         pr -= damp * dr;
         if (!(px > o->of->back && px < o->of->front && pr > 0))
             return false;
-        if (fabs(dr) < 1e-11 * pr && fabs(dx) < 1e-7 * (1 + fabs(px))) {
+        if (fabs(dr) < o->of->settled * pr && fabs(dx) < 1e-7 * (1 + fabs(px))) {
             *x = px;
             *r = pr;
-            return true;
+            return c > 0; /* I_XX < 0: a maximum of I over x, so of the outline */
         }
     }
     return false;
@@ -248,7 +248,8 @@ static bool scan_for_extreme(const outline *o, double *at, double *extreme)
             else
                 fall = px;
             double tx = px, tr = pr;
-            good = k >= 2 && polish(o, &tx, &tr) && tx > rise - 0.5 * (fall - rise) - 1e-9 && tx < fall + 0.5 * (fall - rise) + 1e-9;
+            good =
+                k >= 2 && polish(o, &tx, &tr) && tx > rise - 0.5 * (fall - rise) - 1e-9 && tx < fall + 0.5 * (fall - rise) + 1e-9;
             if (good) {
                 px = tx;
                 pr = tr;
@@ -295,19 +296,11 @@ static bool rear_guess(const problem *q, double *x, double *r)
 /* Above this Peclet number the outline of a pool can have two widest places: under the beam and far behind. */
 static const double two_maxima_from = 2.5;
 
-static bool settled_maximum(const outline *o, double x, double r)
-{
-    mw_moments m;
-    moments_at(o, x, r, &m);
-    return m.gg - m.s < 0; /* I_XX < 0: a maximum of I over x, so of the outline */
-}
-
 /* From a start near a maximum to that maximum. */
 static bool climb(const outline *o, double *x, double *r)
 {
-    double slope;
-    *r = edge_at(o, *x, *r, 0.02, &slope); /* polish does the rest */
-    return *r > 0 && polish(o, x, r) && settled_maximum(o, *x, *r);
+    *r = edge_at(o, *x, *r, 0.02, NULL); /* polish does the rest */
+    return *r > 0 && polish(o, x, r);
 }
 
 static bool find_extreme(const outline *o, double *at, double *extreme)
@@ -345,14 +338,15 @@ static bool find_extreme(const outline *o, double *at, double *extreme)
 /* Everything but temperatures, in sigma. */
 static mw_status solve(double strength, double peclet, mw_pool *out)
 {
-    problem q = {usable_peclet(peclet), log(strength), 0, 0, 0, 0};
+    problem q = {usable_peclet(peclet), log(strength), 0, 0, 0, 0, 0};
     q.log_s = log(mw_gaussian_peak(q.p, &q.peak_at)) + q.log_b;
     *out = no_pool;
     out->peak_at_m = q.peak_at;
-    if (!(q.log_s > 0)) {
+    if (!(q.log_s > LEAST_EXCESS)) {
         out->width_m = out->depth_m = out->length_m = out->front_m = out->back_m = out->width_at_m = out->depth_at_m = 0;
         return MW_NO_MELT;
     }
+    q.settled = fmax(SETTLED, ROUNDING / q.log_s);
     const double reach = near_reach(&q);
     const double far = strength * sqrt(pi / 2); /* trailing length of the point source, in sigma */
     bool good = find_tip(&q, 1, fmin(reach, sqrt(2 * q.log_s) + 1), &q.front);
@@ -365,6 +359,8 @@ static mw_status solve(double strength, double peclet, mw_pool *out)
     out->front_m = q.front;
     out->back_m = q.back;
     out->length_m = q.front - q.back;
+    good = good && out->width_m > 0 && out->depth_m > 0 && out->length_m > 0 &&
+           isfinite(out->width_m + out->depth_m + out->length_m);
     return good ? MW_OK : MW_NO_CONVERGENCE;
 }
 
@@ -388,8 +384,8 @@ mw_status mw_gaussian_pool(const mw_source *source, const mw_medium *medium, mw_
     mw_moments m;
     mw_gaussian_surface(out->peak_at_m, 0, usable_peclet(p), &m);
     out->peak_temperature_K = medium->ambient_K + rise * b * exp(m.log_i);
-    double *const length[] = {&out->width_m, &out->depth_m, &out->length_m, &out->front_m, &out->back_m, &out->width_at_m, &out->depth_at_m,
-                              &out->peak_at_m};
+    double *const length[] = {&out->width_m, &out->depth_m,    &out->length_m,   &out->front_m,
+                              &out->back_m,  &out->width_at_m, &out->depth_at_m, &out->peak_at_m};
     const double back = out->back_m;
     for (unsigned i = 0; i < sizeof length / sizeof *length; i++)
         *length[i] *= sigma;

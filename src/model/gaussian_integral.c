@@ -9,7 +9,12 @@
 
 #include "model/wide.h"
 
-enum { LANES = 8, SURFACE_NODES = 72, BELOW_NODES = 112 }; /* multiples of LANES */
+enum {
+    LANES = 8,
+    SURFACE_NODES = 72,
+    BELOW_NODES = 112,
+    MOST_NODES = 8000
+};                            /* the first two are the least; multiples of LANES */
 static const double CUT = 37; /* exp(-37) = 8.5e-17 */
 
 /* Sums over nodes with weight jacobian/(1+w^2), relative to the floor of the exponent, in LANES strands: node i goes to strand
@@ -34,21 +39,55 @@ static void finish(const strands *a, double step, double floor_exponent, mw_mome
     out->gt = total(a->gt) / one;
 }
 
-/* e^(from + i h) for the first LANES nodes, and e^(LANES h): the others follow by multiplication. */
+/* Nodes, a multiple of LANES, that keep the step within `widest`; bounded whatever a range that is no number of use. */
+static int node_count(double range, double widest, int least)
+{
+    const double groups = fmin(fmax(ceil((range / widest + 1) / LANES), least / LANES), MOST_NODES / LANES);
+    return LANES * (int)groups; /* fmax drops a NaN */
+}
+
+/* e^(from + i h) for the first LANES nodes, and e^(LANES h): the others follow by multiplication. The growth is taken by exp
+ * itself, since an error in it acts like an error in the step. */
 static double first_nodes(double from, double step, double e[LANES])
 {
     const double grow = exp(step);
     e[0] = exp(from);
     for (int i = 1; i < LANES; i++)
         e[i] = e[i - 1] * grow;
-    const double grow2 = grow * grow, grow4 = grow2 * grow2;
-    return grow4 * grow4;
+    return exp(LANES * step);
 }
 
-/* w = sinh u on the surface. `first` weighs node 0: one half where the interval starts at u = 0, since the integrand is even in u. */
-MW_WIDE static void surface_nodes(double x, double y2, double p, double floor_exponent, double first, double e[LANES], double grow, strands *a)
+/* The widest steps that keep aliasing near rounding. An integrand that ends like exp(-c e^(+-2u)) is bounded in a strip of half
+ * width pi/4, so a step h leaves exp(-pi^2/(2h)). */
+static const double STRIP_STEP = 0.14;
+
+/* In ln w two things narrow the strip. A fast beam ends like exp(-c e^(4u)): pi/8. And behind the source the heat is a bump at
+ * w^2 = -x/P of relative width d = sqrt(1+w^2)/(2|x|); there the integrand grows like exp(x^2 G/2), G = cos^2(2v)/cos(4v) - 1, at
+ * a distance v into the complex plane, so that a step of 0.35 d leaves min over v of exp(x^2 G/2 - 2 pi v/h) < 1e-15. */
+static double widest_step(double x, double p)
 {
-    for (int i = 0; i < SURFACE_NODES; i += LANES) {
+    const double end = fmax(STRIP_STEP / 3, STRIP_STEP / (1 + p / 2));
+    return x < 0 ? fmin(end, 0.175 * sqrt(1 - x / p) / -x) : end;
+}
+
+/* Where E, Z = 0, stands CUT above its floor on the far side, in S. */
+static double far_end(double a2, double p)
+{
+    const double a = sqrt(a2);
+    if (a > p) {
+        const double root = (sqrt(2 * CUT + 4 * p * a) + sqrt(2 * CUT)) / (2 * p);
+        return root * root;
+    }
+    const double m = p * p + a2 + 2 * CUT;
+    return (m + sqrt(fmax(0, m * m - 4 * p * p * a2))) / (2 * p * p);
+}
+
+/* w = sinh u on the surface. `first` weighs node 0: one half where the interval starts at u = 0, since the integrand is even in
+ * u. */
+MW_WIDE static void surface_nodes(double x, double y2, double p, double floor_exponent, double first, int nodes, double e[LANES],
+                                  double grow, strands *a)
+{
+    for (int i = 0; i < nodes; i += LANES) {
 #pragma omp simd
         for (int l = 0; l < LANES; l++) {
             const double inv = 1 / e[l], cosh_u = 0.5 * (e[l] + inv), sinh_u = 0.5 * (e[l] - inv);
@@ -67,9 +106,10 @@ MW_WIDE static void surface_nodes(double x, double y2, double p, double floor_ex
 }
 
 /* w = e^u below it. */
-MW_WIDE static void below_nodes(double x, double z2, double p, double floor_exponent, double w[LANES], double grow, strands *a)
+MW_WIDE static void below_nodes(double x, double z2, double p, double floor_exponent, int nodes, double w[LANES], double grow,
+                                strands *a)
 {
-    for (int i = 0; i < BELOW_NODES; i += LANES) {
+    for (int i = 0; i < nodes; i += LANES) {
 #pragma omp simd
         for (int l = 0; l < LANES; l++) {
             const double w2 = w[l] * w[l], s = 1 / (1 + w2), t = 1 / w2, reach = x + p * w2, g = reach * s;
@@ -88,24 +128,17 @@ MW_WIDE static void below_nodes(double x, double z2, double p, double floor_expo
 void mw_gaussian_surface(double x, double y2, double peclet, mw_moments *out)
 {
     const double p = peclet, a2 = (x - p) * (x - p) + y2, a = sqrt(a2);
-    /* Valley and ends in S. */
-    double low = 1, high, best = 1;
-    if (a > p) {
-        const double root = sqrt(2 * CUT + 4 * p * a), b = sqrt(2 * CUT);
-        const double r = (root - b) / (2 * p), l = (root + b) / (2 * p);
-        best = a / p;
-        low = fmax(1, r * r);
-        high = l * l;
-    } else {
-        const double m = p * p + a2 + 2 * CUT;
-        high = (m + sqrt(fmax(0, m * m - 4 * p * p * a2))) / (2 * p * p);
-    }
-    const double from = low > 1 ? acosh(sqrt(low)) : 0, to = acosh(sqrt(high)), step = (to - from) / (SURFACE_NODES - 1);
+    /* Floor and near end in S. */
+    const double best = fmax(1, a / p), root = sqrt(2 * CUT + 4 * p * a), near = 2 * a / (root + sqrt(2 * CUT));
+    const double low = a > p ? fmax(1, near * near) : 1, high = far_end(a2, p);
+    const double from = low > 1 ? acosh(sqrt(low)) : 0, to = acosh(sqrt(high));
+    const int nodes = node_count(to - from, STRIP_STEP, SURFACE_NODES);
+    const double step = (to - from) / (nodes - 1);
     const double at_best = x + p * (best - 1), floor_exponent = (at_best * at_best + y2) / (2 * best);
     double e[LANES];
     const double grow = first_nodes(from, step, e);
     strands sums = {0};
-    surface_nodes(x, y2, p, floor_exponent, low > 1 ? 1 : 0.5, e, grow, &sums);
+    surface_nodes(x, y2, p, floor_exponent, low > 1 ? 1 : 0.5, nodes, e, grow, &sums);
     finish(&sums, step, floor_exponent, out);
 }
 
@@ -140,36 +173,13 @@ void mw_gaussian_below(double x, double z, double peclet, mw_moments *out)
     const double p = peclet, z2 = z * z;
     double low, high, best;
     valley_below(x, z2, p, &low, &high, &best);
-    const double from = 0.5 * log(low), to = 0.5 * log(high), step = (to - from) / (BELOW_NODES - 1);
+    const double from = 0.5 * log(low), to = 0.5 * log(high);
+    const int nodes = node_count(to - from, widest_step(x, p), BELOW_NODES);
+    const double step = (to - from) / (nodes - 1);
     const double at_best = x + p * best, floor_exponent = at_best * at_best / (2 * (1 + best)) + z2 / (2 * best);
     double w[LANES];
     const double grow = first_nodes(from, step, w);
     strands sums = {0};
-    below_nodes(x, z2, p, floor_exponent, w, grow, &sums);
+    below_nodes(x, z2, p, floor_exponent, nodes, w, grow, &sums);
     finish(&sums, step, floor_exponent, out);
-}
-
-double mw_gaussian_drop(double x, double z, double peclet, double log_i_surface)
-{
-    /* int (1 - exp(-z^2/2w^2)) exp(-E) dw/S: falls like w below z and like the surface integrand above. */
-    const double p = peclet, a2 = (x - p) * (x - p), a = sqrt(a2);
-    double high;
-    if (a > p) {
-        const double l = (sqrt(2 * CUT + 4 * p * a) + sqrt(2 * CUT)) / (2 * p);
-        high = l * l;
-    } else {
-        const double m = p * p + a2 + 2 * CUT;
-        high = (m + sqrt(fmax(0, m * m - 4 * p * p * a2))) / (2 * p * p);
-    }
-    /* Behind the source the integrand is a bump at w^2 = -x/P, of relative width 1/(2|x|): the step must resolve it. */
-    const double from = log(z) - 34, to = 0.5 * log(fmax(high - 1, z * z));
-    const int n = 2 + (int)((to - from) * 10 * (1 + fabs(x)));
-    const double step = (to - from) / (n - 1);
-    double w = exp(from), sum = 0;
-    const double grow = exp(step);
-    for (int i = 0; i < n; i++, w *= grow) {
-        const double w2 = w * w, reach = x + p * w2;
-        sum -= expm1(-0.5 * z * z / w2) * exp(-0.5 * reach * reach / (1 + w2) - log_i_surface) * w / (1 + w2);
-    }
-    return sum * step;
 }

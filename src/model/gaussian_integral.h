@@ -17,12 +17,11 @@ typedef struct mw_moments {
 
 /* At (x, sqrt(y2), 0): sinh map, trapezoid rule. */
 void mw_gaussian_surface(double x, double y2, double peclet, mw_moments *out);
-/* At (x, 0, z), z > 0: exponential map, trapezoid rule. */
+/* At (x, 0, z), z > 0 however small: exponential map, trapezoid rule. */
 void mw_gaussian_below(double x, double z, double peclet, mw_moments *out);
-/* 1 - I(x,0,z)/I(x,0,0) without cancellation for small z, given the moments on the surface at x. */
-double mw_gaussian_drop(double x, double z, double peclet, double log_i_surface);
 
-/* The slowest beam that the rules still resolve: below it the pool differs from the stationary one by less than 1e-8. */
+/* The slowest beam that the rules still resolve. The pool of a slower one differs from it by a share of 1e-8 times its own size
+ * in sigma, which no beam in use comes near (v = 1 um/s). */
 #define MW_LEAST_PECLET 1e-8
 
 #endif
