@@ -29,6 +29,9 @@ mw_status mw_gaussian_pool_scaled(double strength, double peclet, mw_pool *out);
  * 30-500 um, copper to titanium. Returns MW_OK, MW_NO_MELT (peak temperature is still set), MW_NO_CONVERGENCE, MW_BAD_VALUE. */
 mw_status mw_gaussian_pool(const mw_source *source, const mw_medium *medium, mw_pool *out);
 
+/* The same without the depth (depth_m and depth_at_m stay NaN), for callers who need the surface alone: about a third less work. */
+mw_status mw_gaussian_surface_pool(const mw_source *source, const mw_medium *medium, mw_pool *out);
+
 /* Temperature (K) at a point in the frame of the source. */
 double mw_gaussian_temperature(const mw_source *source, const mw_medium *medium, double x_m, double y_m, double z_m);
 

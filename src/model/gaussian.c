@@ -335,8 +335,8 @@ static bool find_extreme(const outline *o, double *at, double *extreme)
     return scan_for_extreme(o, at, extreme);
 }
 
-/* Everything but temperatures, in sigma. */
-static mw_status solve(double strength, double peclet, mw_pool *out)
+/* Everything but temperatures, in sigma; the depth only where it is wanted. */
+static mw_status solve(double strength, double peclet, bool with_depth, mw_pool *out)
 {
     problem q = {usable_peclet(peclet), log(strength), 0, 0, 0, 0, 0};
     q.log_s = log(mw_gaussian_peak(q.p, &q.peak_at)) + q.log_b;
@@ -354,13 +354,13 @@ static mw_status solve(double strength, double peclet, mw_pool *out)
     const outline across = {&q, true}, down = {&q, false};
     double half = 0;
     good = good && find_extreme(&across, &out->width_at_m, &half);
-    good = good && find_extreme(&down, &out->depth_at_m, &out->depth_m);
+    good = good && (!with_depth || find_extreme(&down, &out->depth_at_m, &out->depth_m));
     out->width_m = 2 * half;
     out->front_m = q.front;
     out->back_m = q.back;
     out->length_m = q.front - q.back;
-    good = good && out->width_m > 0 && out->depth_m > 0 && out->length_m > 0 &&
-           isfinite(out->width_m + out->depth_m + out->length_m);
+    good = good && out->width_m > 0 && out->length_m > 0 && isfinite(out->width_m + out->length_m) &&
+           (!with_depth || (out->depth_m > 0 && isfinite(out->depth_m)));
     return good ? MW_OK : MW_NO_CONVERGENCE;
 }
 
@@ -369,17 +369,17 @@ mw_status mw_gaussian_pool_scaled(double strength, double peclet, mw_pool *out)
     *out = no_pool;
     if (!(strength > 0 && peclet >= 0) || isinf(strength) || isinf(peclet))
         return MW_BAD_VALUE;
-    return solve(strength, peclet, out);
+    return solve(strength, peclet, true, out);
 }
 
-mw_status mw_gaussian_pool(const mw_source *source, const mw_medium *medium, mw_pool *out)
+static mw_status dimensional(const mw_source *source, const mw_medium *medium, bool with_depth, mw_pool *out)
 {
     double p, b;
     *out = no_pool;
     mw_status status = mw_gaussian_numbers(source, medium, &p, &b);
     if (status != MW_OK)
         return status;
-    status = solve(b, p, out);
+    status = solve(b, p, with_depth, out);
     const double rise = medium->isotherm_K - medium->ambient_K, sigma = source->sigma_m;
     mw_moments m;
     mw_gaussian_surface(out->peak_at_m, 0, usable_peclet(p), &m);
@@ -395,6 +395,16 @@ mw_status mw_gaussian_pool(const mw_source *source, const mw_medium *medium, mw_
         out->cooling_rate_K_per_s = source->speed_m_per_s * out->gradient_K_per_m;
     }
     return status;
+}
+
+mw_status mw_gaussian_pool(const mw_source *source, const mw_medium *medium, mw_pool *out)
+{
+    return dimensional(source, medium, true, out);
+}
+
+mw_status mw_gaussian_surface_pool(const mw_source *source, const mw_medium *medium, mw_pool *out)
+{
+    return dimensional(source, medium, false, out);
 }
 
 double mw_gaussian_temperature(const mw_source *source, const mw_medium *medium, double x_m, double y_m, double z_m)

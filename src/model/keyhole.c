@@ -70,10 +70,15 @@ static bool constants_usable(const mw_keyhole_constants *c)
            isfinite(c->layer_factor) && positive(c->flow_widening);
 }
 
+static mw_source source_at(const mw_keyhole_input *in, double absorptivity)
+{
+    return (mw_source){absorptivity * in->power_W, in->speed_m_per_s, in->d4sigma_m / 4};
+}
+
 /* Computed peak temperature rise at A0 over the boiling rise, in units of the ratio at which the cavity starts. */
 static double onset_index(const mw_keyhole_input *in, const mw_keyhole_constants *c)
 {
-    const mw_source source = {in->absorptivity * in->power_W, in->speed_m_per_s, in->d4sigma_m / 4};
+    const mw_source source = source_at(in, in->absorptivity);
     double peclet, strength;
     if (mw_gaussian_numbers(&source, &in->boil, &peclet, &strength) < 0)
         return NAN;
@@ -121,12 +126,6 @@ mw_mode mw_keyhole_mode(double onset_index, double width_m, double depth_m)
     return depth_m >= width_m / 2 ? MW_KEYHOLE_MODE : MW_TRANSITION;
 }
 
-static mw_status pool_at(const mw_keyhole_input *in, double absorptivity, mw_pool *out)
-{
-    const mw_source source = {absorptivity * in->power_W, in->speed_m_per_s, in->d4sigma_m / 4};
-    return mw_gaussian_pool(&source, &in->melt, out);
-}
-
 /* Above the onset, with out->conduction known: the cavity, then the pool at the absorptivity it gives (length, tips),
  * then the pool at the surface (width), where only 1/(1 + h/W) of the heat is left: the rest enters along the cavity.
  */
@@ -136,12 +135,14 @@ static mw_status add_cavity(const mw_keyhole_input *in, const mw_keyhole_constan
     const double relative = gate * open_cavity(in, c->cavity_shape);
     out->cavity_depth_m = relative * in->d4sigma_m;
     out->absorptivity = cavity_absorptivity(in->absorptivity, relative, c->cavity_shape);
-    mw_status status = pool_at(in, out->absorptivity, &out->pool);
+    const mw_source inside = source_at(in, out->absorptivity);
+    mw_status status = mw_gaussian_surface_pool(&inside, &in->melt, &out->pool);
     if (status != MW_OK)
         return status;
     mw_pool surface;
     const double share = 1 / (1 + out->cavity_depth_m / out->pool.width_m);
-    status = pool_at(in, out->absorptivity * share, &surface);
+    const mw_source on_top = source_at(in, out->absorptivity * share);
+    status = mw_gaussian_surface_pool(&on_top, &in->melt, &surface);
     out->pool.width_m = c->flow_widening * surface.width_m;
     out->pool.width_at_m = surface.width_at_m;
     out->pool.depth_m = blend(out->conduction.depth_m / c->flow_widening, out->cavity_depth_m, c->blend_exponent);
@@ -161,7 +162,8 @@ mw_status mw_keyhole_pool_compute(const mw_keyhole_input *input, const mw_keyhol
     nothing_known(out);
     if (!input_usable(input) || !constants_usable(constants))
         return MW_BAD_VALUE;
-    mw_status status = pool_at(input, input->absorptivity, &out->conduction);
+    const mw_source flat = source_at(input, input->absorptivity);
+    mw_status status = mw_gaussian_pool(&flat, &input->melt, &out->conduction);
     out->onset_index = onset_index(input, constants);
     if (status < 0 || !isfinite(out->onset_index)) {
         nothing_known(out);

@@ -465,6 +465,24 @@ static void a_pool_scales_with_the_beam_at_fixed_numbers(void **state)
     CHECK_REL(three.peak_temperature_K, one.peak_temperature_K, 1e-13);
 }
 
+static void the_surface_pool_is_the_pool_without_its_depth(void **state)
+{
+    (void)state;
+    const mw_medium m = {26.9, 6881. * 790, 300, 1730};
+    for (double power = 5; power < 300; power *= 1.7) {
+        const mw_source s = {power, 0.9, 20e-6};
+        mw_pool whole, surface;
+        assert_int_equal(mw_gaussian_surface_pool(&s, &m, &surface), mw_gaussian_pool(&s, &m, &whole));
+        if (whole.width_m > 0)
+            assert_true(isnan(surface.depth_m) && isnan(surface.depth_at_m));
+        surface.depth_m = whole.depth_m;
+        surface.depth_at_m = whole.depth_at_m;
+        if (isnan(whole.gradient_K_per_m)) /* NaN is not equal to itself by value, but the bytes are */
+            surface.gradient_K_per_m = whole.gradient_K_per_m;
+        assert_memory_equal(&surface, &whole, sizeof whole);
+    }
+}
+
 static void a_standing_beam_is_the_slow_limit(void **state)
 {
     (void)state;
@@ -535,6 +553,7 @@ int main(void)
         cmocka_unit_test(pools_satisfy_their_equations_everywhere),
         cmocka_unit_test(the_wider_of_two_maxima_is_taken),
         cmocka_unit_test(a_pool_scales_with_the_beam_at_fixed_numbers),
+        cmocka_unit_test(the_surface_pool_is_the_pool_without_its_depth),
         cmocka_unit_test(a_standing_beam_is_the_slow_limit),
         cmocka_unit_test(what_is_no_setting_is_refused),
     };
