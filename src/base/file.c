@@ -11,6 +11,26 @@
 #include <sys/stat.h>
 #include <unistd.h>
 
+/* Names of temporaries, for a signal handler: each slot is set after its name is whole and cleared before it is freed. */
+enum { MOST_UNFINISHED = 8 };
+static char *volatile unfinished[MOST_UNFINISHED];
+
+static void note_unfinished(char *name, char *was)
+{
+    for (int i = 0; i < MOST_UNFINISHED; i++)
+        if (unfinished[i] == was) {
+            unfinished[i] = name;
+            return;
+        }
+}
+
+void mw_file_remove_unfinished(void)
+{
+    for (int i = 0; i < MOST_UNFINISHED; i++)
+        if (unfinished[i] != NULL)
+            (void)unlink(unfinished[i]);
+}
+
 mw_status mw_file_read(const char *path, size_t most, char **bytes, size_t *n, mw_error *err)
 {
     *bytes = NULL;
@@ -99,6 +119,7 @@ mw_status mw_file_create(const char *path, bool overwrite, mw_file_out *out, mw_
         mw_file_discard(out);
         return mw_fail(err, MW_CANNOT_WRITE, path, 0, "cannot be written: %s", strerror(why));
     }
+    note_unfinished(out->temporary, NULL);
     /* mkstemp gives 0600; a result is meant to be read like any other file of the user. */
     const mode_t mask = umask(0);
     (void)umask(mask);
@@ -144,8 +165,10 @@ void mw_file_discard(mw_file_out *out)
 {
     if (out->stream != NULL)
         (void)fclose(out->stream);
-    if (out->temporary != NULL)
+    if (out->temporary != NULL) {
         (void)unlink(out->temporary);
+        note_unfinished(NULL, out->temporary);
+    }
     free(out->temporary);
     free(out->path);
     memset(out, 0, sizeof *out);

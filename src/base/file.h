@@ -29,6 +29,8 @@ typedef struct mw_file_out {
 mw_status mw_file_create(const char *path, bool overwrite, mw_file_out *out, mw_error *err);
 /* Flushes, checks, syncs and moves into place. On failure the temporary is gone and the target untouched. */
 mw_status mw_file_commit(mw_file_out *out, mw_error *err);
+/* Removes the temporaries of all files that are being written. Safe in a signal handler; for programs that end at once after it. */
+void mw_file_remove_unfinished(void);
 /* Gives up: removes the temporary. Safe to call after commit and on a zeroed struct. */
 void mw_file_discard(mw_file_out *out);
 

@@ -204,6 +204,8 @@ static int run_action(const arguments *args, const action *a)
     }
     mw_error err;
     output out;
+    if (given(args, OPT_FORMAT) && a->run != show_card)
+        return wrong_words(args, "--format goes with 'card show' alone");
     if (open_output(args, &out, &err) != MW_OK)
         return complain(args->command, &err);
     int code = a->run(args, out.to);

@@ -40,6 +40,9 @@ int run_track(const arguments *args)
     output_format format;
     mw_result result;
     mw_status status = refuse_words(args, &err);
+    int threads;
+    if (status == MW_OK)
+        status = read_threads(args, &threads, &err); /* one setting needs one; a wrong number is wrong all the same */
     if (status == MW_OK)
         status = need(args, OPT_POWER, &err);
     if (status == MW_OK)

@@ -192,6 +192,10 @@ mw_status read_format(const arguments *args, output_format standard, output_form
     static const char *const names[] = {"text", "csv", "json"};
     *out = standard;
     const char *word = args->value[OPT_FORMAT], *path = args->value[OPT_OUTPUT];
+    if (path != NULL && path[0] == '\0')
+        return mw_fail(err, MW_BAD_USAGE, NULL, 0, "-o needs the name of a file, or - for standard output");
+    if (word != NULL && path != NULL && ends_in(path, ".csv") && strcmp(word, "csv") != 0)
+        return mw_fail(err, MW_BAD_USAGE, NULL, 0, "--format %.20s does not go with a file that ends in .csv", word);
     if (word == NULL && path != NULL)
         *out = ends_in(path, ".csv") ? FORMAT_CSV : ends_in(path, ".json") ? FORMAT_JSON : ends_in(path, ".txt") ? FORMAT_TEXT : standard;
     if (word == NULL)
@@ -241,8 +245,14 @@ static char *beside(const char *path)
 mw_status open_output(const arguments *args, output *out, mw_error *err)
 {
     *out = (output){.args = args, .path = args->value[OPT_OUTPUT], .to = stdout};
+    if (out->path != NULL && strcmp(out->path, "-") == 0)
+        out->path = NULL;
     if (out->path == NULL)
         return MW_OK;
+    static const char *const pictures[] = {".png", ".svg", ".pdf"};
+    for (size_t i = 0; i < sizeof pictures / sizeof *pictures; i++)
+        if (ends_in(out->path, pictures[i]))
+            return mw_fail(err, MW_BAD_USAGE, NULL, 0, "-o %.80s: pictures come from 'map'; this writes text, csv or json", out->path);
     const mw_status status = mw_file_create(out->path, given(args, OPT_FORCE), &out->file, err);
     out->to = out->file.stream;
     return status;

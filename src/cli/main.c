@@ -69,8 +69,20 @@ static void hold_standard_streams(void)
             (void)open("/dev/null", fd == 0 ? O_WRONLY : O_RDONLY);
 }
 
+/* Ctrl-C and its like: nothing half-written stays behind, and the shell sees what ended the program. */
+static void end_by_signal(int number)
+{
+    mw_file_remove_unfinished();
+    (void)signal(number, SIG_DFL);
+    (void)raise(number);
+}
+
 int main(int argc, char **argv)
 {
+    (void)signal(SIGINT, end_by_signal);
+    (void)signal(SIGTERM, end_by_signal);
+    if (signal(SIGHUP, end_by_signal) == SIG_IGN) /* nohup meant it */
+        (void)signal(SIGHUP, SIG_IGN);
     hold_standard_streams();
     /* A closed pipe is an answer to be given by exit code, not a death by signal. */
     (void)signal(SIGPIPE, SIG_IGN);

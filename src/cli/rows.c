@@ -106,6 +106,15 @@ mw_status rows_open(const arguments *args, row_source **out, mw_error *err)
                 s->at[c] = (int)i;
     }
     remark_on_columns(s);
+    const struct { size_t column; double value; } vital[] = {{ROW_POWER, s->defaults.setting.power_W}, {ROW_SPEED, s->defaults.setting.speed_m_per_s}};
+    for (size_t i = 0; i < 2 && status == MW_OK; i++)
+        if (s->at[vital[i].column] < 0 && isnan(vital[i].value))
+            status = mw_fail(err, MW_BAD_FILE, args->value[OPT_FROM], 1, "neither a column %s nor an option gives the %s", name_of(vital[i].column),
+                             i == 0 ? "power" : "speed");
+    if (status != MW_OK) {
+        rows_close(s);
+        return status;
+    }
     *out = s;
     return MW_OK;
 }

@@ -59,7 +59,8 @@ typedef struct mw_alloy_reader {
 } mw_alloy_reader;
 
 /* Checks a "source" list against the card's sources and marks them as used. */
-bool mw_alloy_read_source(mw_alloy_reader *r, const cJSON *node, const char *const **out, size_t *n);
+bool mw_alloy_read_source(mw_alloy_reader *r, const cJSON *node, const char *what, const char *const **out,
+                          size_t *n);
 /* Reads "properties" and checks each alone and against the others. Needs alloy->source. */
 bool mw_alloy_read_properties(mw_alloy_reader *r, const cJSON *node);
 

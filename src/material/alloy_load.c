@@ -159,9 +159,11 @@ static bool unknown_source(mw_alloy_reader *r, const cJSON *node, const char *ke
     return mw_card_refuse(&r->card, node, "source \"%.80s\" does not stand in \"sources\"", key);
 }
 
-bool mw_alloy_read_source(mw_alloy_reader *r, const cJSON *node, const char *const **out, size_t *n)
+bool mw_alloy_read_source(mw_alloy_reader *r, const cJSON *node, const char *what, const char *const **out, size_t *n)
 {
-    if (!mw_card_texts(&r->card, node, "source", 1, out, n))
+    char name[120];
+    (void)snprintf(name, sizeof name, "source\" of \"%s", what); /* the reader puts the outer quotes */
+    if (!mw_card_texts(&r->card, node, name, 1, out, n))
         return false;
     for (size_t i = 0; i < *n; i++) {
         size_t j = 0;
@@ -263,7 +265,7 @@ static bool read_composition(mw_alloy_reader *r, const cJSON *node)
     const cJSON *source = mw_card_need(&r->card, node, what, "source");
     const char *const *list = NULL;
     size_t n = 0;
-    if (source == NULL || !mw_alloy_read_source(r, source, &list, &n))
+    if (source == NULL || !mw_alloy_read_source(r, source, "composition", &list, &n))
         return false;
     const cJSON *note = cJSON_GetObjectItemCaseSensitive(node, "note");
     bool from_memory = false;

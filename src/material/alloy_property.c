@@ -53,8 +53,9 @@ static bool check_units_of_keys(mw_alloy_reader *r, const cJSON *properties)
         size_t stem = 0;
         const mw_key_unit *unit = mw_property_unit(id, &stem);
         return mw_card_refuse(&r->card, child,
-                              "unknown key \"%.80s\": %s unit: this property is given %s, key \"%s\"", child->string,
-                              child->string[stem] == '\0' ? "no" : "wrong", unit->phrase, mw_property_key(id));
+                              "unknown key \"%.80s\": %s unit: this property is given %s, key \"%s\", allowed %s to %s",
+                              child->string, child->string[stem] == '\0' ? "no" : "wrong", unit->phrase, mw_property_key(id),
+                              mw_card_shown(mw_property_rule_of(id)->lowest).text, mw_card_shown(mw_property_rule_of(id)->highest).text);
     }
     return true;
 }
@@ -82,6 +83,16 @@ static bool check_value(mw_alloy_reader *r, const cJSON *at, mw_property_id id, 
                           hint ? "; it looks like " : "", hint ? unit->mistaken : "");
 }
 
+/* A number in the range of the property; anything else is refused with that range. */
+static bool read_value(mw_alloy_reader *r, const cJSON *at, mw_property_id id, double *out)
+{
+    const mw_property_rule *rule = mw_property_rule_of(id);
+    if (cJSON_IsNumber(at))
+        return mw_card_number(&r->card, at, rule->key, out) && check_value(r, at, id, *out);
+    return mw_card_refuse(&r->card, at, "\"%s\" must be a number, found %s; allowed: %s to %s", rule->key, mw_card_found(at).text,
+                          mw_card_shown(rule->lowest).text, mw_card_shown(rule->highest).text);
+}
+
 static bool check_temperature(mw_alloy_reader *r, const cJSON *at, mw_property_id id, double temperature_K)
 {
     if (temperature_K >= MW_ROW_LOWEST_K && temperature_K <= MW_ROW_HIGHEST_K)
@@ -99,7 +110,7 @@ static bool read_scalar(mw_alloy_reader *r, const cJSON *value, const cJSON *tem
     if (number == NULL)
         return mw_card_no_memory(&r->card);
     number[1] = NAN;
-    if (!mw_card_number(&r->card, value, mw_property_key(id), &number[0]) || !check_value(r, value, id, number[0]))
+    if (!read_value(r, value, id, &number[0]))
         return false;
     if (temperature != NULL) {
         if (!mw_card_number(&r->card, temperature, "temperature_K", &number[1]) ||
@@ -132,7 +143,7 @@ static bool read_rows(mw_alloy_reader *r, const cJSON *value, const cJSON *tempe
     const cJSON *t = temperature->child, *v = value->child;
     for (size_t i = 0; i < n; i++, t = t->next, v = v->next) {
         if (!mw_card_number(&r->card, t, "temperature_K", &rows[i]) || !check_temperature(r, t, id, rows[i]) ||
-            !mw_card_number(&r->card, v, key, &rows[n + i]) || !check_value(r, v, id, rows[n + i]))
+            !read_value(r, v, id, &rows[n + i]))
             return false;
         if (i > 0 && !(rows[i] > rows[i - 1]))
             return mw_card_refuse(&r->card, t, "\"%s\": temperatures must rise strictly, but %s follows %s", key,
@@ -191,8 +202,10 @@ static bool read_property(mw_alloy_reader *r, const cJSON *node, mw_property_id 
     if (uncertainty == NULL ||
         !mw_card_number_in(&r->card, uncertainty, "uncertainty_pct", 0, 100, &p->uncertainty_pct))
         return false;
-    const cJSON *source = mw_card_need(&r->card, node, what, "source");
-    return source != NULL && mw_alloy_read_source(r, source, &p->source, &p->n_source) && read_remarks(r, node, p);
+    const cJSON *source = cJSON_GetObjectItemCaseSensitive(node, "source");
+    if (source == NULL)
+        return mw_card_refuse(&r->card, node, "key \"source\" is missing in %s; write \"source\": [\"KEY\"] with a key of \"sources\"", what);
+    return mw_alloy_read_source(r, source, mw_property_key(id), &p->source, &p->n_source) && read_remarks(r, node, p);
 }
 
 /* ---- one against another ---- */
@@ -203,8 +216,8 @@ static bool check_order(mw_alloy_reader *r)
     const double liquidus = r->alloy->property[MW_PROP_LIQUIDUS].value[0];
     const double boiling = r->alloy->property[MW_PROP_BOILING].value[0];
     if (!(solidus <= liquidus))
-        return mw_card_refuse(&r->card, r->node[MW_PROP_LIQUIDUS], "\"liquidus_K\" %s is below \"solidus_K\" %s",
-                              mw_card_shown(liquidus).text, mw_card_shown(solidus).text);
+        return mw_card_refuse(&r->card, r->node[MW_PROP_LIQUIDUS], "\"liquidus_K\" %s is below \"solidus_K\" %s of line %ld; allowed: from there up",
+                              mw_card_shown(liquidus).text, mw_card_shown(solidus).text, mw_json_line(r->node[MW_PROP_SOLIDUS]));
     if (!(liquidus < boiling))
         return mw_card_refuse(&r->card, r->node[MW_PROP_BOILING], "\"boiling_K\" %s must be above \"liquidus_K\" %s",
                               mw_card_shown(boiling).text, mw_card_shown(liquidus).text);

@@ -93,10 +93,20 @@ static const char *kind_of(const cJSON *node)
 {
     return cJSON_IsObject(node)   ? "an object"
            : cJSON_IsArray(node)  ? "a list"
-           : cJSON_IsString(node) ? "a text"
-           : cJSON_IsNumber(node) ? "a number"
            : cJSON_IsBool(node)   ? "true or false"
                                   : "null";
+}
+
+mw_found mw_card_found(const cJSON *node)
+{
+    mw_found f;
+    if (cJSON_IsString(node))
+        (void)snprintf(f.text, sizeof f.text, "a text, \"%.60s\"", node->valuestring);
+    else if (cJSON_IsNumber(node))
+        (void)snprintf(f.text, sizeof f.text, "a number, %s", mw_card_shown(node->valuedouble).text);
+    else
+        (void)snprintf(f.text, sizeof f.text, "%s", kind_of(node));
+    return f;
 }
 
 /* "a", "b", "c" for messages; what does not fit is dropped. */
@@ -115,7 +125,7 @@ static void join(char *out, size_t size, const char *const names[], size_t n)
 bool mw_card_object(mw_card *card, const cJSON *node, const char *what, const char *const allowed[], size_t n)
 {
     if (!cJSON_IsObject(node))
-        return mw_card_refuse(card, node, "%s must be an object { }, found %s", what, kind_of(node));
+        return mw_card_refuse(card, node, "%s must be an object { }, found %s", what, mw_card_found(node).text);
     for (const cJSON *child = node->child; child != NULL; child = child->next) {
         bool known = false;
         for (size_t i = 0; i < n && !known; i++)
@@ -153,7 +163,7 @@ bool mw_card_plain(const char *text)
 const char *mw_card_text(mw_card *card, const cJSON *node, const char *key)
 {
     if (!cJSON_IsString(node)) {
-        (void)mw_card_refuse(card, node, "\"%.80s\" must be a text, found %s", key, kind_of(node));
+        (void)mw_card_refuse(card, node, "\"%.80s\" must be a text, found %s", key, mw_card_found(node).text);
         return NULL;
     }
     const char *text = node->valuestring;
@@ -178,7 +188,7 @@ bool mw_card_texts(mw_card *card, const cJSON *node, const char *key, size_t lea
                    size_t *n)
 {
     if (!cJSON_IsArray(node))
-        return mw_card_refuse(card, node, "\"%s\" must be a list of texts, found %s", key, kind_of(node));
+        return mw_card_refuse(card, node, "\"%s\" must be a list of texts, found %s", key, mw_card_found(node).text);
     const size_t count = (size_t)cJSON_GetArraySize(node);
     if (count < least)
         return mw_card_refuse(card, node, "\"%s\" is an empty list; at least one is needed", key);
@@ -219,7 +229,7 @@ bool mw_card_word(mw_card *card, const cJSON *node, const char *key, const char 
 bool mw_card_number(mw_card *card, const cJSON *node, const char *key, double *out)
 {
     if (!cJSON_IsNumber(node))
-        return mw_card_refuse(card, node, "\"%.80s\" must be a number, found %s", key, kind_of(node));
+        return mw_card_refuse(card, node, "\"%.80s\" must be a number, found %s", key, mw_card_found(node).text);
     *out = node->valuedouble;
     return true;
 }
@@ -238,6 +248,6 @@ bool mw_card_flag(mw_card *card, const cJSON *node, const char *key, bool *out)
 {
     *out = node != NULL && cJSON_IsTrue(node);
     if (node != NULL && !cJSON_IsBool(node))
-        return mw_card_refuse(card, node, "\"%s\" must be true or false, found %s", key, kind_of(node));
+        return mw_card_refuse(card, node, "\"%s\" must be true or false, found %s", key, mw_card_found(node).text);
     return true;
 }

@@ -32,6 +32,12 @@ typedef struct mw_shown {
 } mw_shown;
 mw_shown mw_card_shown(double value);
 
+/* What stands at a node: its kind, and the value where it is short enough to tell. */
+typedef struct mw_found {
+    char text[120];
+} mw_found;
+mw_found mw_card_found(const cJSON *node);
+
 /* Writes the error line, with the line of `at`, and returns false. */
 bool mw_card_refuse(mw_card *card, const cJSON *at, const char *format, ...)
 #if defined(__GNUC__)

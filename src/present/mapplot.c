@@ -9,6 +9,7 @@
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
+#include <time.h>
 #include <unistd.h>
 
 #include "base/file.h"
@@ -145,6 +146,25 @@ static void draw_all(const mw_canvas *c, void *what)
     mw_map_page_draw(c, d->picture, &d->page);
 }
 
+/* The PDF's date is blanked afterwards, but its length depends on the time zone: draw in UTC, and put the zone back. */
+static mw_status run_in_utc(mw_picture_format format, const mw_file_out *out, drawing *d, mw_error *err)
+{
+    const char *const zone = getenv("TZ");
+    char *const kept = zone != NULL ? strdup(zone) : NULL;
+    if (zone != NULL && kept == NULL)
+        return mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory for a picture");
+    (void)setenv("TZ", "UTC0", 1);
+    tzset();
+    const mw_status status = mw_canvas_run(format, out->temporary, d->page.width, d->page.height, draw_all, d, err);
+    if (kept != NULL)
+        (void)setenv("TZ", kept, 1);
+    else
+        (void)unsetenv("TZ");
+    tzset();
+    free(kept);
+    return status;
+}
+
 static mw_status make_scenes(const mw_map_picture *p, mw_map_scene scene[], mw_error *err)
 {
     const mw_outline_grid grid = {p->n_power, p->n_speed, p->power_W, p->speed_mm_per_s};
@@ -180,7 +200,7 @@ mw_status mw_map_draw(const mw_map_picture *picture, const char *path, bool over
     mw_map_page_make(picture, scene, &d->page);
     for (size_t k = 0; k < picture->n_panel; k++)
         mw_map_scene_place(&scene[k], &d->page.frame[k]);
-    status = mw_canvas_run(format, out.temporary, d->page.width, d->page.height, draw_all, d, err);
+    status = run_in_utc(format, &out, d, err);
     if (status == MW_OK)
         status = settle_bytes(format, &out, err);
     if (status == MW_OK)

@@ -82,9 +82,13 @@ static void limit_lines(FILE *to, const mw_plan *plan, const mw_result *r)
     const mw_limits *l = mw_verdict_limits(plan->kind);
     (void)fprintf(to, "\nlimits\n");
     if (r->judged) {
-        limit_line(to, "overlap index", r->overlap_index, l->overlap_half, "(h/W)^2 + (t/D)^2; up to 1 the pools melt the whole layer");
-        (void)fprintf(to, "  %-20s %8.3g   with the powder's own thickness, %.0f um at %.0f %% packing\n", "", r->overlap_index_effective,
-                      um(mw_effective_layer(r->setting.layer_m, MW_PACKING_DEFAULT)), 100 * MW_PACKING_DEFAULT);
+        if (isinf(r->overlap_index)) {
+            (void)fprintf(to, "  %-20s  no pool\n", "overlap index");
+        } else {
+            limit_line(to, "overlap index", r->overlap_index, l->overlap_half, "(h/W)^2 + (t/D)^2; up to 1 the pools melt the whole layer");
+            (void)fprintf(to, "  %-20s %8.3g   with the powder's own thickness, %.0f um at %.0f %% packing\n", "", r->overlap_index_effective,
+                          um(mw_effective_layer(r->setting.layer_m, MW_PACKING_DEFAULT)), 100 * MW_PACKING_DEFAULT);
+        }
         (void)fprintf(to, "  %-20s %8.3g %% of the section with layers not rotated, %.3g %% with rotation\n", "unmelted", 100 * r->unmelted_aligned,
                       100 * r->unmelted_scattered);
         limit_line(to, "melt energy ratio", r->melt_energy_ratio, l->energy_half, "absorbed energy over what melts the layer's volume");
@@ -97,6 +101,9 @@ static void limit_lines(FILE *to, const mw_plan *plan, const mw_result *r)
 static void verdict_lines(FILE *to, const mw_result *r)
 {
     const mw_judgement *j = &r->judgement;
+    if (r->overlap_index > 1 && j->verdict == MW_NOMINAL)
+        (void)fprintf(to, "  an index above 1 with a nominal verdict: the geometry of one layer leaves a rest, yet cubes on record stay within a point of\n"
+                          "  their study's best up to the even-odds value\n");
     (void)fprintf(to, "\nverdict    %s\n  nominal %.2f   lack of fusion %.2f   keyhole pores (too much energy) %.2f      balling, beside it: %.2f\n",
                   mw_verdict_word(j->verdict), j->p_nominal, j->p_lack_of_fusion, j->p_keyhole, r->p_balling);
 }

@@ -28,6 +28,8 @@ mw_status mw_setting_check(const mw_setting *setting, mw_error *err)
         const double v = *(const double *)((const char *)setting + allowed[i].offset);
         if ((allowed[i].may_be_zero && v == 0) || (allowed[i].may_be_missing && isnan(v)))
             continue;
+        if (isnan(v))
+            return mw_fail(err, MW_BAD_VALUE, NULL, 0, "%s is missing", allowed[i].name);
         if (!(v >= allowed[i].low && v <= allowed[i].high))
             return mw_fail(err, MW_BAD_VALUE, NULL, 0, "%s %.6g %s is outside what can be right: %g to %g %s%s", allowed[i].name,
                            v * allowed[i].to_trade, allowed[i].unit, allowed[i].low * allowed[i].to_trade,

@@ -96,7 +96,7 @@ static void refuses_keys_with_another_unit(void **state)
         {"\"solidus_K\"",
          "\"solidus_C\"",
          NULL,
-         {"unknown key \"solidus_C\"", "wrong unit: this property is given in K, key \"solidus_K\""}},
+         {"unknown key \"solidus_C\"", "wrong unit: this property is given in K, key \"solidus_K\", allowed 300 to 4500"}},
         {"\"density_solid_kg_per_m3\"",
          "\"density_solid_g_per_cm3\"",
          NULL,
@@ -143,7 +143,7 @@ static void refuses_missing_keys(void **state)
         {", \"source\": [\"Invented\"], \"note\": \"round\"",
          "",
          "\"solidus_K\"",
-         {"key \"source\" is missing in \"solidus_K\""}},
+         {"key \"source\" is missing in \"solidus_K\"; write \"source\": [\"KEY\"]"}},
         {"\"citation\": \"A second invented source\", ",
          "",
          "\"Other\": {",
@@ -163,7 +163,7 @@ static void refuses_wrong_types(void **state)
          NULL,
          {"\"designations\" must be a list of texts, found a text"}},
         {"\"cautions\": [\"nickel\"]", "\"cautions\": [1]", NULL, {"\"cautions\" must be a text, found a number"}},
-        {"\"value\": 1600", "\"value\": \"1600\"", NULL, {"\"solidus_K\" must be a number, found a text"}},
+        {"\"value\": 1600", "\"value\": \"1600\"", NULL, {"\"solidus_K\" must be a number, found a text, \"1600\"; allowed: 300 to 4500"}},
         {"\"value\": 1600", "\"value\": null", NULL, {"\"solidus_K\" must be a number, found null"}},
         {"\"value\": 1600", "\"value\": [1600]", NULL, {"\"solidus_K\" is one number, not a table"}},
         {"\"value\": 1600",
@@ -183,7 +183,7 @@ static void refuses_wrong_types(void **state)
         {"\"source\": [\"Invented\"], \"note\"",
          "\"source\": \"Invented\", \"note\"",
          NULL,
-         {"\"source\" must be a list of texts, found a text"}},
+         {"\"source\" of \"solidus_K\" must be a list of texts, found a text, \"Invented\""}},
         {"\"uncertainty_pct\": 0.5",
          "\"uncertainty_pct\": true",
          NULL,
@@ -277,7 +277,7 @@ static void refuses_contradictions(void **state)
 {
     (void)state;
     static const refusal c[] = {
-        {"{\"value\": 1700", "{\"value\": 1599", NULL, {"\"liquidus_K\" 1599 is below \"solidus_K\" 1600"}},
+        {"{\"value\": 1700", "{\"value\": 1599", NULL, {"\"liquidus_K\" 1599 is below \"solidus_K\" 1600 of line ", "allowed: from there up"}},
         {"\"value\": 3200,",
          "\"value\": 1700,",
          "\"boiling_K\"",
@@ -310,7 +310,7 @@ static void refuses_bad_sources(void **state)
 {
     (void)state;
     static const refusal c[] = {
-        {"\"source\": [\"Invented\"], \"note\"", "\"source\": [], \"note\"", NULL, {"\"source\" is an empty list"}},
+        {"\"source\": [\"Invented\"], \"note\"", "\"source\": [], \"note\"", NULL, {"\"source\" of \"solidus_K\" is an empty list"}},
         {"\"source\": [\"Invented\"], \"note\"",
          "\"source\": [\"Inventd\"], \"note\"",
          NULL,
@@ -319,7 +319,7 @@ static void refuses_bad_sources(void **state)
          "\"source\": [\"Qqqqqqqqqq\"], \"note\"",
          NULL,
          {"source \"Qqqqqqqqqq\" does not stand"}},
-        {"[\"Invented\", \"Other\"]", "[\"Invented\", \"Invented\"]", NULL, {"\"source\" has \"Invented\" twice"}},
+        {"[\"Invented\", \"Other\"]", "[\"Invented\", \"Invented\"]", NULL, {"\"source\" of \"boiling_K\" has \"Invented\" twice"}},
         {"[\"Invented\", \"Other\"]", "[\"Invented\"]", "\"Other\": {", {"source \"Other\" is never used"}},
         {"\"citation\": \"A second invented source\"", "\"citation\": \"\"", NULL, {"\"citation\" is empty"}},
         {"\"citation\": \"A second invented source\"", "\"citation\": \"  \"", NULL, {"\"citation\" is empty"}},

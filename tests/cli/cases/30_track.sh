@@ -52,9 +52,10 @@ shell 'table from standard input' 1 '^a1,316L' '' "'$program' track --from - --q
 printf 'power_W,speed_mm_per_s\n200,800\n' >short.csv
 expect 'options fill what the table lacks' 0 '^200,800,110,40,80,20,1[0-9][0-9]\.' - -- track --from short.csv --alloy 316L --d4sigma 80 --hatch 110 --layer 40
 printf 'power_W,speed_mm_s,spot_um,hatch\n200,800,80,100\n' >slips.csv
-expect 'slips in column names are pointed out' 1 '' 'column "speed_mm_s" is not recognised and passed through; did you mean speed_mm_per_s?
+expect 'slips in column names are pointed out' 3 - 'column "speed_mm_s" is not recognised and passed through; did you mean speed_mm_per_s?
 did you mean d4sigma_um (the 1/e2 diameter)?
-did you mean hatch_um?' -- track --from slips.csv --alloy 316L
+did you mean hatch_um?
+neither a column speed_mm_per_s nor an option gives the speed' -- track --from slips.csv --alloy 316L
 printf 'power_W,power_W\n1,2\n' >twice.csv
 refuse 'column twice' 3 'twice.csv:1: column "power_W" stands twice' -- track --from twice.csv
 printf 'power_W;speed_mm_per_s\n200;0,8\n' >semi.csv
@@ -95,3 +96,5 @@ awk 'BEGIN { print "n,power_W,speed_mm_per_s,hatch_um,layer_um"; for (i = 1; i <
 for t in 1 2 5; do "$program" track --from many.csv --alloy 718 --d4sigma 80 --threads $t --quiet >many$t.csv; done
 cmp -s many1.csv many2.csv && cmp -s many1.csv many5.csv && pass 'table: same bytes on any number of threads' || fail 'table: same bytes on any number of threads' ''
 [ "$(tail -n +2 many1.csv | cut -d, -f1 | tr '\n' ' ')" = "$(seq -s ' ' 1 1100) " ] && pass 'table: every row once, in order' || fail 'table: every row once, in order' ''
+printf 'power_W,speed_mm_per_s\n,800\n' >gap.csv
+expect 'an empty power is called missing' 1 'bad-value: power is missing' '1 of 1 rows' -- track --from gap.csv --alloy 316L --d4sigma 80

@@ -30,3 +30,18 @@ for l in de_DE.UTF-8 fr_FR.UTF-8 tr_TR.UTF-8; do
     LC_ALL=$l "$program" sweep $S >other.csv 2>/dev/null
     cmp -s plain.csv other.csv && pass "locale $l" || fail "locale $l" ''
 done
+expect 'dash is standard output' 0 '^power_W' - -- track --alloy 316L --d4sigma 80 --power 200 --speed 800 --format csv -o -
+refuse 'no name for the output' 2 'o needs the name of a file' -- track --alloy 316L --d4sigma 80 --power 200 --speed 800 -o ''
+refuse 'a picture from track' 2 "pictures come from 'map'" -- track --alloy 316L --d4sigma 80 --power 200 --speed 800 -o x.png
+refuse 'json into a csv file' 2 'does not go with a file that ends in .csv' -- sweep $S -o x.csv --format json
+refuse 'format of a list of cards' 2 "goes with 'card show' alone" -- card list --format csv
+# Ended in the middle of a write: nothing half-written stays behind.
+for sig in INT TERM HUP; do
+    env -i PATH="$PATH" sh -c "trap - INT; exec '$program' sweep --alloy 316L --d4sigma 80 --power 100:400:300 --speed 200:2000:300 --hatch 90:120:4 --layer 30:50:4 -o ended.csv --quiet" &
+    pid=$!
+    n=0
+    while [ -z "$(find . -name 'ended.csv.part-*' -size +0)" ] && [ $n -lt 300 ]; do sleep 0.1; n=$((n + 1)); done
+    kill -$sig $pid
+    wait $pid 2>/dev/null
+    [ -z "$(find . -name 'ended.csv*')" ] && pass "ended by $sig: nothing left" || fail "ended by $sig: nothing left" "$(find . -name 'ended.csv*')"
+done

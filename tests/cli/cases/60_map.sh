@@ -13,6 +13,10 @@ for f in svg png pdf; do
     expect "map to $f again" 0 '' '' -- map $M -o m.$f --contours width,depth,build-rate --energy-lines 40,80 --from "$root/tests/demo/settings.csv" --force
     cmp -s m.$f first.$f && pass "same bytes of $f" || fail "same bytes of $f" ''
 done
+for z in UTC0 JST-9 EST5EDT; do
+    TZ=$z "$program" map $M -o zone-$z.pdf --quiet >out
+    cmp -s zone-UTC0.pdf zone-$z.pdf && pass "pdf in time zone $z" || fail "pdf in time zone $z" ''
+done
 head -c 4 m.png | od -c | grep -q 'P   N   G' && pass 'png is a png' || fail 'png is a png' ''
 head -c 5 m.pdf | grep -q '%PDF-' && pass 'pdf is a pdf' || fail 'pdf is a pdf' ''
 grep -q '<svg' m.svg && pass 'svg is an svg' || fail 'svg is an svg' ''
