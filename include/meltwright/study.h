@@ -112,6 +112,8 @@ typedef struct mw_grid {
     const double *power_W, *speed_m_per_s, *hatch_m, *layer_m;
     size_t n_power, n_speed, n_hatch, n_layer;
     double d4sigma_m, preheat_K;
+    size_t first_cell, n_cell; /* a part of the cells, counted in order; n_cell 0: all. Only the pools of that part are computed, and its
+                                  results are those of the whole to the last bit */
 } mw_grid;
 
 enum { MW_MOST_TRACKS = 1 << 20, MW_MOST_CELLS = 50000000 };

@@ -14,7 +14,7 @@ enum { FEW = 17, CONTOUR_KINDS = 3, MOST_ENERGY_LINES = 12, MOST_MARKS = 200 };
 
 static const struct {
     const char *word, *name, *unit;
-} contour_kind[CONTOUR_KINDS] = {{"width", "width", "\xC2\xB5m"}, {"depth", "depth", "\xC2\xB5m"}, {"build-rate", "build rate", "cm3/h"}};
+} contour_kind[CONTOUR_KINDS] = {{"width", "width", "\xC2\xB5m"}, {"depth", "depth", "\xC2\xB5m"}, {"build-rate", "build rate", "cm\xC2\xB3/h"}};
 
 /* Fields of one panel, and the best place in it. */
 typedef struct panel_fields {
@@ -186,6 +186,7 @@ static mw_status read_marks(map_run *m, mw_error *err)
     mw_status status = rows_open(&alone, &rows, err);
     bool end = false;
     size_t elsewhere = 0, bad_rows = 0;
+    mw_setting lost = {0};
     while (status == MW_OK && !end) {
         row_values v;
         mw_error bad;
@@ -198,6 +199,8 @@ static mw_status read_marks(map_run *m, mw_error *err)
         }
         const int panel = panel_of(&m->axes.grid, &v.setting);
         if (panel == -2) {
+            if (elsewhere == 0)
+                lost = v.setting;
             elsewhere++;
             continue;
         }
@@ -211,7 +214,8 @@ static mw_status read_marks(map_run *m, mw_error *err)
     }
     rows_close(rows);
     if (status == MW_OK && elsewhere > 0)
-        remark(m->args, "%zu settings of --from have a hatch and layer that no panel shows", elsewhere);
+        remark(m->args, "%zu settings of --from have a hatch and layer that no panel shows, the first %.4g and %.4g um", elsewhere, 1e6 * lost.hatch_m,
+               1e6 * lost.layer_m);
     if (status == MW_OK && bad_rows > 0)
         remark(m->args, "%zu rows of --from have no usable power and speed", bad_rows);
     return status;
@@ -344,8 +348,8 @@ static mw_status shares_of(const map_run *m, size_t p, mw_map_share *share, mw_e
 static mw_status print_text(const map_run *m, FILE *to, mw_error *err)
 {
     const mw_grid *g = &m->axes.grid;
-    (void)fprintf(to, "%s, beam %.4g um (D4sigma), plate at %.4g C, %zu powers x %zu speeds\n\n", m->alloy->name, 1e6 * g->d4sigma_m,
-                  g->preheat_K - 273.15, g->n_power, g->n_speed);
+    (void)fprintf(to, "%s, beam %.4g um (D4sigma), plate at %.4g C, model %s, %zu powers x %zu speeds\n\n", m->alloy->name, 1e6 * g->d4sigma_m,
+                  g->preheat_K - 273.15, mw_model_word(m->plan.model), g->n_power, g->n_speed);
     (void)fputs("  hatch  layer   nominal  lack of  keyhole    no     most robust place on the grid\n"
                 "     um     um             fusion            track\n", to);
     for (size_t p = 0; p < m->n_panel; p++) {
@@ -353,8 +357,15 @@ static mw_status print_text(const map_run *m, FILE *to, mw_error *err)
         mw_status status = shares_of(m, p, &share, err);
         if (status != MW_OK)
             return status;
-        (void)fprintf(to, "%7.4g %6.4g %7.0f %% %6.0f %% %6.0f %% %6.0f %%", 1e6 * g->hatch_m[p / g->n_layer], 1e6 * g->layer_m[p % g->n_layer],
-                      100 * share.nominal, 100 * share.lack_of_fusion, 100 * share.keyhole, 100 * share.no_track);
+        const double part[] = {share.nominal, share.lack_of_fusion, share.keyhole, share.no_track};
+        static const int width[] = {7, 6, 6, 6};
+        (void)fprintf(to, "%7.4g %6.4g", 1e6 * g->hatch_m[p / g->n_layer], 1e6 * g->layer_m[p % g->n_layer]);
+        for (size_t k = 0; k < sizeof part / sizeof *part; k++) {
+            if (part[k] > 0 && part[k] < 0.005) /* a sliver is not nothing */
+                (void)fprintf(to, " %*s %%", width[k], "<0.5");
+            else
+                (void)fprintf(to, " %*.0f %%", width[k], 100 * part[k]);
+        }
         const panel_fields *f = &m->panel[p];
         mw_result r;
         if (!(f->best_distance > 0)) {

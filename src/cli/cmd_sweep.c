@@ -52,6 +52,7 @@ typedef struct sink {
     output_format format;
     size_t n, by_verdict[3], warned;
     const char *path;
+    bool headless; /* a later part of the whole */
     const mw_provenance *provenance;
     mw_error *err;
 } sink;
@@ -92,7 +93,7 @@ static void put_head(const sink *s)
 static mw_status put_row(void *to, const mw_result *r)
 {
     sink *s = to;
-    if (s->n == 0)
+    if (s->n == 0 && !s->headless)
         put_head(s);
     if (s->format == FORMAT_CSV) {
         mw_csv_row(s->to, r, NULL);
@@ -109,7 +110,8 @@ static mw_status put_row(void *to, const mw_result *r)
     return ferror(s->to) ? mw_fail(s->err, MW_CANNOT_WRITE, s->path, 0, "writing failed") : MW_OK;
 }
 
-static mw_status write_sweep(const arguments *args, const mw_plan *plan, const mw_grid *grid, int threads, output_format format, mw_error *err)
+static mw_status write_sweep(const arguments *args, const mw_plan *plan, const mw_grid *grid, int threads, output_format format, const shard *part,
+                             mw_error *err)
 {
     output out;
     mw_status status = open_output(args, &out, err);
@@ -118,7 +120,7 @@ static mw_status write_sweep(const arguments *args, const mw_plan *plan, const m
     provenance_store store;
     mw_provenance provenance;
     fill_provenance(args, plan, &store, &provenance);
-    sink s = {.to = out.to, .format = format, .path = out.path, .provenance = &provenance, .err = err};
+    sink s = {.to = out.to, .format = format, .path = out.path, .headless = part->part > 1, .provenance = &provenance, .err = err};
     status = mw_sweep(plan, grid, true, threads, put_row, &s, err);
     if (status == MW_OK && format == FORMAT_JSON)
         (void)fputs("\n]}\n", out.to);
@@ -148,8 +150,20 @@ int run_sweep(const arguments *args)
         status = read_grid(args, &axes, &err);
     if (status == MW_OK)
         status = make_plan(args, &alloy, &plan, &err);
+    shard part;
     if (status == MW_OK)
-        status = write_sweep(args, &plan, &axes.grid, threads, format, &err);
+        status = read_shard(args, &part, &err);
+    if (status == MW_OK && part.parts > 1 && format != FORMAT_CSV)
+        status = mw_fail(&err, MW_BAD_USAGE, NULL, 0, "--shard goes with csv alone: parts of other formats do not join");
+    if (status == MW_OK && part.parts > 1) {
+        mw_grid *g = &axes.grid;
+        const size_t pairs = (g->n_hatch > 0 ? g->n_hatch : 1) * (g->n_layer > 0 ? g->n_layer : 1);
+        shard_range(&part, g->n_power * g->n_speed * pairs, &g->first_cell, &g->n_cell);
+        if (g->n_cell == 0)
+            status = mw_fail(&err, MW_BAD_USAGE, NULL, 0, "--shard %s: the table has fewer rows than that", args->value[OPT_SHARD]);
+    }
+    if (status == MW_OK)
+        status = write_sweep(args, &plan, &axes.grid, threads, format, &part, &err);
     mw_alloy_free(alloy);
     free_grid(&axes);
     return status == MW_OK ? EXIT_DONE : complain(args->command, &err);

@@ -2,6 +2,7 @@
  * track --from: every row of a table, in order, in constant memory: a batch of rows is read, evaluated on all cores and written before the
  * next is read. The input's columns come first, as they were given; a result whose
  * name the input already uses for something of its own is called NAME_predicted. */
+#include <stdint.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -29,6 +30,8 @@ typedef struct table_run {
     bool renamed[128];   /* results called NAME_predicted */
     size_t n_row, n_failed, n_warned;
     int threads;
+    shard part;
+    size_t first, count, read; /* rows of the part; rows read so far */
     kept_row batch[BATCH];
     size_t n_batch;
 } table_run;
@@ -175,6 +178,12 @@ static mw_status read_batch(table_run *t, bool *end, mw_error *err)
         mw_status status = rows_next(t->rows, end, &values, &row->bad, err);
         if (status != MW_OK || *end)
             return status;
+        if (t->read++ < t->first)
+            continue;
+        if (t->read > t->first + t->count) {
+            *end = true;
+            return MW_OK;
+        }
         t->n_batch++;
         status = keep_fields(rows_reader(t->rows), row, err);
         if (status != MW_OK)
@@ -235,7 +244,7 @@ static mw_status write_table(const arguments *args, table_run *t, mw_provenance 
 {
     if (t->format == FORMAT_JSON)
         (void)fputs("{\"results\": [\n", t->out.to);
-    else
+    else if (t->part.part == 1)
         put_header(t);
     mw_status status = run_rows(t, err);
     if (status != MW_OK)
@@ -253,6 +262,41 @@ static mw_status write_table(const arguments *args, table_run *t, mw_provenance 
     return status;
 }
 
+/* How many records the file holds: read once for that, so that parts are equally long. */
+static mw_status count_rows(const arguments *args, size_t *n, mw_error *err)
+{
+    mw_csv_reader *reader;
+    bool end = false;
+    *n = 0;
+    mw_status status = mw_csv_open(args->value[OPT_FROM], &reader, err);
+    while (status == MW_OK && !end) {
+        const mw_status record = mw_csv_next(reader, &end, err);
+        status = record == MW_BAD_FILE ? MW_OK : record; /* a ragged record is a row too */
+        *n += !end;
+    }
+    mw_csv_close(reader);
+    return status;
+}
+
+/* All rows, or those of the part. */
+static mw_status choose_rows(const arguments *args, table_run *t, mw_error *err)
+{
+    t->first = 0;
+    t->count = SIZE_MAX;
+    mw_status status = read_shard(args, &t->part, err);
+    if (status != MW_OK || t->part.parts == 1)
+        return status;
+    if (t->format != FORMAT_CSV)
+        return mw_fail(err, MW_BAD_USAGE, NULL, 0, "--shard goes with csv alone: parts of other formats do not join");
+    if (strcmp(args->value[OPT_FROM], "-") == 0)
+        return mw_fail(err, MW_BAD_USAGE, NULL, 0, "--shard needs a file: standard input cannot be counted first");
+    size_t n;
+    status = count_rows(args, &n, err);
+    if (status == MW_OK)
+        shard_range(&t->part, n, &t->first, &t->count);
+    return status;
+}
+
 static int run_table(const arguments *args, table_run *t, mw_error *err)
 {
     provenance_store store;
@@ -265,6 +309,8 @@ static int run_table(const arguments *args, table_run *t, mw_error *err)
         status = mw_fail(err, MW_BAD_USAGE, NULL, 0, "--from gives csv or json, not text");
     if (status == MW_OK)
         status = read_threads(args, &t->threads, err);
+    if (status == MW_OK)
+        status = choose_rows(args, t, err);
     if (status == MW_OK)
         status = rows_open(args, &t->rows, err);
     if (status == MW_OK)

@@ -40,6 +40,8 @@ int run_track(const arguments *args)
     output_format format;
     mw_result result;
     mw_status status = refuse_words(args, &err);
+    if (status == MW_OK && given(args, OPT_SHARD))
+        status = mw_fail(&err, MW_BAD_USAGE, NULL, 0, "--shard goes with --from");
     int threads;
     if (status == MW_OK)
         status = read_threads(args, &threads, &err); /* one setting needs one; a wrong number is wrong all the same */

@@ -181,6 +181,28 @@ mw_status read_threads(const arguments *args, int *out, mw_error *err)
     return MW_OK;
 }
 
+mw_status read_shard(const arguments *args, shard *out, mw_error *err)
+{
+    *out = (shard){1, 1};
+    const char *text = args->value[OPT_SHARD];
+    if (text == NULL)
+        return MW_OK;
+    const char *slash = strchr(text, '/');
+    double part = 0, parts = 0;
+    const bool good = slash != NULL && mw_read_number(text, (size_t)(slash - text), &part) && mw_read_number(slash + 1, strlen(slash + 1), &parts) &&
+                      part >= 1 && part <= parts && parts <= 1e6 && part == floor(part) && parts == floor(parts);
+    if (!good)
+        return mw_fail(err, MW_BAD_VALUE, NULL, 0, "--shard: '%.40s' is not I/N with whole numbers, 1 <= I <= N, e.g. 2/8", text);
+    *out = (shard){(size_t)part, (size_t)parts};
+    return MW_OK;
+}
+
+void shard_range(const shard *s, size_t n, size_t *first, size_t *count)
+{
+    *first = n / s->parts * (s->part - 1) + (n % s->parts < s->part - 1 ? n % s->parts : s->part - 1);
+    *count = n / s->parts + (s->part - 1 < n % s->parts);
+}
+
 static bool ends_in(const char *text, const char *tail)
 {
     const size_t n = strlen(text), m = strlen(tail);

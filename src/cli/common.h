@@ -35,6 +35,13 @@ mw_status read_beam(const arguments *args, bool required, double *d4sigma_m, mw_
 /* Power, speed, hatch, layer, preheat and beam as one setting; what is not given: NaN, layer 0 (bare plate), preheat 20 C. */
 mw_status read_setting(const arguments *args, bool beam_required, mw_setting *out, mw_error *err);
 mw_status read_threads(const arguments *args, int *out, mw_error *err);
+/* --shard I/N; 1 of 1 when not given. */
+typedef struct shard {
+    size_t part, parts;
+} shard;
+mw_status read_shard(const arguments *args, shard *out, mw_error *err);
+/* First of the part's items among n, and how many: parts differ by at most one item. */
+void shard_range(const shard *s, size_t n, size_t *first, size_t *count);
 typedef enum output_format { FORMAT_TEXT, FORMAT_CSV, FORMAT_JSON } output_format;
 /* From --format, else from the ending of -o, else `standard`. */
 mw_status read_format(const arguments *args, output_format standard, output_format *out, mw_error *err);

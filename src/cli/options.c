@@ -41,6 +41,11 @@ static mw_status unknown_option(const command_entry *of, const char *name, mw_er
     for (size_t i = 0; i < OPTION_COUNT; i++)
         if (strcmp(table[i].name, name) == 0)
             return mw_fail(err, MW_BAD_USAGE, NULL, 0, "--%s is no option of '%s'", name, of->name);
+    /* Names that other versions of the commands take: a near miss would only mislead. */
+    static const char *const elsewhere[] = {"machine", "lot", "fit", "samples", "seed"};
+    for (size_t i = 0; i < sizeof elsewhere / sizeof *elsewhere; i++)
+        if (strcmp(elsewhere[i], name) == 0)
+            return mw_fail(err, MW_BAD_USAGE, NULL, 0, "--%s is not in this version", name);
     const char *names[OPTION_COUNT];
     for (size_t i = 0; i < OPTION_COUNT; i++)
         names[i] = (table[i].on & of->on) != 0 ? table[i].name : NULL;

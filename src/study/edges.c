@@ -1,31 +1,17 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * Where along power or speed the verdict enters or leaves nominal, and the margins that follow. */
 #include <math.h>
-#include <stdlib.h>
 
 #include "study/internal.h"
-
-static int by_value(const void *a, const void *b)
-{
-    const double x = *(const double *)a, y = *(const double *)b;
-    return (x > y) - (x < y);
-}
 
 size_t mw_line_values(const double *value, size_t n, double *out)
 {
     const double step = log(MW_LINE_RATIO);
     const long first = (long)floor(log(value[0] / MW_MARGIN_REACH) / step);
     const long last = (long)ceil(log(value[n - 1] * MW_MARGIN_REACH) / step);
-    const size_t count = (size_t)(last - first + 1) + n;
-    if (out == NULL)
-        return count;
-    size_t k = 0;
-    for (long i = first; i <= last; i++)
-        out[k++] = exp((double)i * step);
-    for (size_t i = 0; i < n; i++)
-        out[k++] = value[i];
-    qsort(out, k, sizeof *out, by_value);
-    return k;
+    for (long i = first; i <= last && out != NULL; i++)
+        out[i - first] = exp((double)i * step);
+    return (size_t)(last - first + 1);
 }
 
 static double position(mw_factor factor, const mw_track *track)
@@ -87,9 +73,12 @@ static mw_status refine(const mw_plan *plan, mw_factor factor, const mw_track *f
 mw_status mw_edges_on(const mw_line *line, double hatch_m, double layer_m, mw_edges *out)
 {
     out->n = 0;
+    out->nominal_before = false;
     double before = NAN;
     for (size_t k = 0; k < line->n; k++) {
         const double now = line->track[k].status < 0 ? NAN : distance(line->plan, &line->track[k], hatch_m, layer_m);
+        if (k == 0)
+            out->nominal_before = now > 0;
         if (k > 0 && !isnan(before) && !isnan(now) && (before > 0) != (now > 0) && out->n < MW_MOST_EDGES) {
             const mw_status status = refine(line->plan, line->factor, &line->track[k - 1], &line->track[k], hatch_m, layer_m, before, now,
                                             &out->at[out->n]);

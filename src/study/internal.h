@@ -16,8 +16,9 @@ mw_status mw_margins_at(const mw_plan *plan, const mw_result *result, mw_margins
  * it are the values where the verdict enters or leaves nominal. */
 typedef enum mw_factor { MW_ALONG_POWER, MW_ALONG_SPEED } mw_factor;
 
-/* Values at which a line is laid out: powers of `MW_LINE_RATIO` from low / 5 to high * 5, and the n given values themselves.
- * Absolute powers, so that a single setting and a grid look at the same places. Returns how many; call with out = NULL to count. */
+/* Values at which a line over rising values is laid out: powers of MW_LINE_RATIO from a fifth of the first to five times the last. They
+ * are absolute, so that a single setting, a grid and a part of a grid look at the same places and find the same edges to the last bit.
+ * Returns how many; call with out = NULL to count. */
 #define MW_LINE_RATIO 1.05
 #define MW_MARGIN_REACH 5.0
 size_t mw_line_values(const double *value, size_t n, double *out);
@@ -32,6 +33,7 @@ typedef struct mw_line {
 enum { MW_MOST_EDGES = 8 };
 typedef struct mw_edges {
     size_t n;
+    bool nominal_before; /* the verdict below the first edge is nominal */
     double at[MW_MOST_EDGES]; /* rising */
 } mw_edges;
 mw_status mw_edges_on(const mw_line *line, double hatch_m, double layer_m, mw_edges *out);

@@ -47,7 +47,7 @@ static mw_status check_grid(const mw_grid *g, mw_error *err)
     if (status != MW_OK)
         return status;
     const double tracks = (double)g->n_power * (double)g->n_speed, cells = tracks * (double)g->n_hatch * (double)g->n_layer;
-    if (cells > MW_MOST_CELLS)
+    if (g->n_cell == 0 ? cells > MW_MOST_CELLS : g->n_cell > MW_MOST_CELLS)
         return mw_fail(err, MW_TOO_LARGE, NULL, 0,
                        "a grid of %zu x %zu x %zu x %zu = %.4g cells (about %.3g GB of table) is more than the %d allowed; "
                        "use fewer values or split the ranges",
@@ -107,26 +107,74 @@ done:
     return status;
 }
 
+/* Margin from the edges of a line. Where a window narrower than the line's steps hides between two of them, the edges do not explain the
+ * setting's own verdict: then it is searched from the setting itself. */
+static mw_status margin_on(const sweep *s, const mw_edges *edges, const mw_result *r, mw_factor factor, double *down_pct, double *up_pct)
+{
+    const double value = factor == MW_ALONG_POWER ? r->setting.power_W : r->setting.speed_m_per_s;
+    bool nominal = edges->nominal_before;
+    for (size_t i = 0; i < edges->n && edges->at[i] <= value; i++)
+        nominal = !nominal;
+    if (nominal) {
+        mw_margin_from(edges, value, down_pct, up_pct);
+        return MW_OK;
+    }
+    double down, up;
+    mw_status status = mw_nearest_edge(s->plan, r, factor, false, &down);
+    if (status == MW_OK)
+        status = mw_nearest_edge(s->plan, r, factor, true, &up);
+    if (status == MW_OK) {
+        *down_pct = 100 * (1 - down / value);
+        *up_pct = 100 * (up / value - 1);
+    }
+    return status;
+}
+
+static mw_status add_margins(const sweep *s, size_t ip, size_t iv, size_t pair, mw_result *r)
+{
+    const size_t n_pairs = s->grid.n_hatch * s->grid.n_layer;
+    if (s->along_power == NULL || !r->judged)
+        return MW_OK;
+    r->margins = (mw_margins){0, 0, 0, 0};
+    if (r->judgement.verdict != MW_NOMINAL)
+        return MW_OK;
+    const mw_status status = margin_on(s, &s->along_power[iv * n_pairs + pair], r, MW_ALONG_POWER, &r->margins.power_down_pct, &r->margins.power_up_pct);
+    return status != MW_OK ? status
+                           : margin_on(s, &s->along_speed[ip * n_pairs + pair], r, MW_ALONG_SPEED, &r->margins.speed_down_pct, &r->margins.speed_up_pct);
+}
+
 static mw_status write_cells(const sweep *s, mw_result_sink sink, void *to)
 {
     const mw_grid *g = &s->grid;
     const size_t n_pairs = g->n_hatch * g->n_layer;
-    for (size_t i = 0; i < g->n_power * g->n_speed; i++) {
-        const size_t ip = i / g->n_speed, iv = i % g->n_speed;
-        for (size_t p = 0; p < n_pairs; p++) {
-            mw_result r;
-            mw_result_at(s->plan, &s->track[i], g->hatch_m[p / g->n_layer], g->layer_m[p % g->n_layer], &r);
-            if (s->along_power != NULL && r.judged && r.judgement.verdict == MW_NOMINAL) {
-                mw_margin_from(&s->along_power[iv * n_pairs + p], g->power_W[ip], &r.margins.power_down_pct, &r.margins.power_up_pct);
-                mw_margin_from(&s->along_speed[ip * n_pairs + p], g->speed_m_per_s[iv], &r.margins.speed_down_pct, &r.margins.speed_up_pct);
-            } else if (s->along_power != NULL && r.judged) {
-                r.margins = (mw_margins){0, 0, 0, 0};
-            }
-            const mw_status status = sink(to, &r);
-            if (status != MW_OK)
-                return status;
-        }
+    for (size_t c = g->first_cell; c < g->first_cell + g->n_cell; c++) {
+        const size_t track = c / n_pairs, pair = c % n_pairs;
+        mw_result r;
+        mw_result_at(s->plan, &s->track[track], g->hatch_m[pair / g->n_layer], g->layer_m[pair % g->n_layer], &r);
+        mw_status status = add_margins(s, track / g->n_speed, track % g->n_speed, pair, &r);
+        if (status == MW_OK)
+            status = sink(to, &r);
+        if (status != MW_OK)
+            return status;
     }
+    return MW_OK;
+}
+
+/* Leaves only the powers that the wanted cells need; cells are then counted from the first of them. */
+static mw_status cut_to_part(mw_grid *g, mw_error *err)
+{
+    const size_t per_power = g->n_speed * g->n_hatch * g->n_layer, all = g->n_power * per_power;
+    if (g->n_cell == 0) {
+        g->first_cell = 0;
+        g->n_cell = all;
+        return MW_OK;
+    }
+    if (g->first_cell >= all || g->n_cell > all - g->first_cell)
+        return mw_fail(err, MW_BAD_USAGE, NULL, 0, "cells %zu to %zu are not all in a grid of %zu", g->first_cell, g->first_cell + g->n_cell, all);
+    const size_t first = g->first_cell / per_power, last = (g->first_cell + g->n_cell - 1) / per_power;
+    g->power_W += first;
+    g->n_power = last - first + 1;
+    g->first_cell -= first * per_power;
     return MW_OK;
 }
 
@@ -149,6 +197,8 @@ mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, 
     if (s.threads <= 0)
         s.threads = 1;
     mw_status status = check_grid(&s.grid, err);
+    if (status == MW_OK)
+        status = cut_to_part(&s.grid, err);
     if (status != MW_OK)
         return status;
     const size_t n_pairs = s.grid.n_hatch * s.grid.n_layer;

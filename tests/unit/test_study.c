@@ -325,7 +325,7 @@ static const double powers[] = {120, 180, 240, 300}, speeds[] = {0.5, 0.8, 1.2},
 
 static rows swept(const mw_plan *plan, int threads)
 {
-    const mw_grid g = {powers, speeds, hatches, layers, 4, 3, 2, 2, 80e-6, 293.15};
+    const mw_grid g = {powers, speeds, hatches, layers, 4, 3, 2, 2, 80e-6, 293.15, 0, 0};
     rows all = {calloc(48, sizeof(mw_result)), 0};
     mw_error err;
     if (mw_sweep(plan, &g, true, threads, keep, &all, &err) != MW_OK)
@@ -382,6 +382,33 @@ static void any_number_of_threads_gives_the_same_bytes(void **state)
     free(one.row);
 }
 
+/* Any cut of the grid into parts gives the cells of the whole, to the last bit. */
+static void parts_make_the_whole(void **state)
+{
+    (void)state;
+    const mw_plan plan = plan_for(MW_MODEL_DEFAULT);
+    rows whole = swept(&plan, 1);
+    for (size_t size = 1; size <= 48; size += 5) {
+        mw_result row[48];
+        rows part = {row, 0};
+        for (size_t first = 0; first < 48; first += size) {
+            const mw_grid g = {powers, speeds, hatches, layers, 4, 3, 2, 2, 80e-6, 293.15, first, first + size <= 48 ? size : 48 - first};
+            assert_int_equal(mw_sweep(&plan, &g, true, 2, keep, &part, NULL), MW_OK);
+        }
+        assert_int_equal(part.n, 48);
+        for (size_t i = 0; i < 48; i++) {
+            assert_memory_equal(&part.row[i].pool, &whole.row[i].pool, sizeof(mw_pool));
+            assert_memory_equal(&part.row[i].margins, &whole.row[i].margins, sizeof(mw_margins));
+            assert_true(part.row[i].setting.power_W == whole.row[i].setting.power_W && part.row[i].setting.layer_m == whole.row[i].setting.layer_m);
+        }
+    }
+    mw_error err;
+    const mw_grid beyond = {powers, speeds, hatches, layers, 4, 3, 2, 2, 80e-6, 293.15, 40, 9};
+    assert_int_equal(mw_sweep(&plan, &beyond, false, 1, keep, NULL, &err), MW_BAD_USAGE);
+    assert_non_null(strstr(err.text, "not all in a grid of 48"));
+    free(whole.row);
+}
+
 static mw_status stop_at_three(void *to, const mw_result *r)
 {
     (void)r;
@@ -394,7 +421,7 @@ static void grids_are_checked_before_they_run(void **state)
     const mw_plan plan = plan_for(MW_MODEL_DEFAULT);
     mw_error err;
     int calls = 0;
-    mw_grid g = {powers, speeds, hatches, layers, 4, 3, 2, 2, 80e-6, 293.15};
+    mw_grid g = {powers, speeds, hatches, layers, 4, 3, 2, 2, 80e-6, 293.15, 0, 0};
     assert_int_equal(mw_sweep(&plan, &g, false, 1, stop_at_three, &calls, &err), MW_CANNOT_WRITE);
     assert_int_equal(calls, 3);
     const double falling[] = {300, 200};
@@ -405,13 +432,13 @@ static void grids_are_checked_before_they_run(void **state)
     g.n_power = 0;
     assert_int_equal(mw_sweep(&plan, &g, false, 1, keep, NULL, &err), MW_BAD_VALUE);
     const double fast[] = {0.5, 900};
-    g = (mw_grid){powers, fast, hatches, layers, 4, 2, 2, 2, 80e-6, 293.15};
+    g = (mw_grid){powers, fast, hatches, layers, 4, 2, 2, 2, 80e-6, 293.15, 0, 0};
     assert_int_equal(mw_sweep(&plan, &g, false, 1, keep, NULL, &err), MW_BAD_VALUE);
     assert_non_null(strstr(err.text, "speed 900000 mm/s"));
     double *long_axis = malloc(40000 * sizeof *long_axis);
     for (int i = 0; i < 40000; i++)
         long_axis[i] = 10e-6 + i * 1e-9;
-    g = (mw_grid){powers, speeds, long_axis, long_axis, 4, 3, 40000, 40000, 80e-6, 293.15};
+    g = (mw_grid){powers, speeds, long_axis, long_axis, 4, 3, 40000, 40000, 80e-6, 293.15, 0, 0};
     assert_int_equal(mw_sweep(&plan, &g, false, 1, keep, NULL, &err), MW_TOO_LARGE);
     assert_non_null(strstr(err.text, "1.92e+10 cells"));
     for (int i = 0; i < 40000; i++)
@@ -419,7 +446,7 @@ static void grids_are_checked_before_they_run(void **state)
     double *more = malloc(40000 * sizeof *more);
     for (int i = 0; i < 40000; i++)
         more[i] = 0.1 + i * 1e-5;
-    g = (mw_grid){long_axis, more, NULL, NULL, 1100, 1000, 0, 0, 80e-6, 293.15};
+    g = (mw_grid){long_axis, more, NULL, NULL, 1100, 1000, 0, 0, 80e-6, 293.15, 0, 0};
     assert_int_equal(mw_sweep(&plan, &g, false, 1, keep, NULL, &err), MW_TOO_LARGE);
     assert_non_null(strstr(err.text, "pools"));
     free(more);
@@ -430,7 +457,7 @@ static void a_grid_without_hatch_and_layer_gives_tracks_alone(void **state)
 {
     (void)state;
     const mw_plan plan = plan_for(MW_MODEL_DEFAULT);
-    const mw_grid g = {powers, speeds, NULL, NULL, 4, 3, 0, 0, 80e-6, 293.15};
+    const mw_grid g = {powers, speeds, NULL, NULL, 4, 3, 0, 0, 80e-6, 293.15, 0, 0};
     mw_result row[12];
     rows all = {row, 0};
     assert_int_equal(mw_sweep(&plan, &g, true, 1, keep, &all, NULL), MW_OK);
@@ -454,6 +481,7 @@ int main(void)
         cmocka_unit_test(the_order_of_published_porosity_is_kept),
         cmocka_unit_test(a_sweep_is_its_settings_in_order),
         cmocka_unit_test(any_number_of_threads_gives_the_same_bytes),
+        cmocka_unit_test(parts_make_the_whole),
         cmocka_unit_test(grids_are_checked_before_they_run),
         cmocka_unit_test(a_grid_without_hatch_and_layer_gives_tracks_alone),
     };

@@ -98,3 +98,11 @@ cmp -s many1.csv many2.csv && cmp -s many1.csv many5.csv && pass 'table: same by
 [ "$(tail -n +2 many1.csv | cut -d, -f1 | tr '\n' ' ')" = "$(seq -s ' ' 1 1100) " ] && pass 'table: every row once, in order' || fail 'table: every row once, in order' ''
 printf 'power_W,speed_mm_per_s\n,800\n' >gap.csv
 expect 'an empty power is called missing' 1 'bad-value: power is missing' '1 of 1 rows' -- track --from gap.csv --alloy 316L --d4sigma 80
+for n in 2 7; do
+    rm -f parts.csv
+    for i in $(seq 1 $n); do "$program" track --from many.csv --alloy 718 --d4sigma 80 --quiet --shard $i/$n >>parts.csv; done
+    cmp -s many1.csv parts.csv && pass "table in $n parts" || fail "table in $n parts" ''
+done
+refuse 'part of one setting' 2 'shard goes with --from' -- track $B --shard 1/2
+refuse 'part of standard input' 2 'cannot be counted' -- track --from - --shard 1/2
+refuse 'table without a file' 3 'nowhere.csv' -- track --from nowhere.csv --shard 1/2

@@ -19,3 +19,14 @@ refuse 'a grid of 1e9 cells' 3 '1e+09 cells.*is more than the 50000000 allowed' 
 refuse 'an axis too long' 3 'COUNT 1000000000 is more' -- sweep --alloy 316L --d4sigma 80 --power 100:400:1e9 --speed 800
 refuse 'a range of two' 3 "power: '100:200' is not START:STOP:COUNT" -- sweep --alloy 316L --d4sigma 80 --power 100:200 --speed 800
 refuse 'a speed out of reason on the axis' 3 'speed 900000 mm/s' -- sweep --alloy 316L --d4sigma 80 --power 100 --speed 100,900000
+# Parts in order are the whole, byte for byte.
+"$program" sweep $S --quiet >whole.csv
+for n in 1 2 5 48; do
+    rm -f parts.csv
+    for i in $(seq 1 $n); do "$program" sweep $S --quiet --shard $i/$n >>parts.csv; done
+    cmp -s whole.csv parts.csv && pass "sweep in $n parts" || fail "sweep in $n parts" ''
+done
+for s in 0/3 4/3 1.5/3 x/3 3 1/0 -1/3; do refuse "shard $s" 3 'is not I/N' -- sweep $S --shard $s; done
+refuse 'more parts than rows' 2 'fewer rows than that' -- sweep $S --shard 49/49
+refuse 'parts of json' 2 'parts of other formats do not join' -- sweep $S --shard 1/2 --format json
+refuse 'an option of another version' 2 'seed is not in this version' -- sweep $S --seed 1
