@@ -94,7 +94,8 @@ void mw_alloy_free(mw_alloy *alloy);
 /* Finds a card by name, designation ("S31603", "UNS S31603"; letter case and blanks do not matter) or path (contains '/'
  * or ends in ".json") among the *.json files of dirs[0..n_dir-1], first directory first, and loads it.
  * A *.json file whose "card" is not "alloy", or whose name ends in ".schema.json", is passed over.
- * In one folder a name goes before a designation; two cards that match alike are refused (MW_BAD_FILE).
+ * In one folder a name goes before a designation; two cards that match alike are refused (MW_BAD_FILE). When no folder has the word
+ * as it stands, letters and digits alone are compared ("Ti6Al4V"), and a name that is a number may follow letters ("alloy 718").
  * Errors: as mw_alloy_load, and MW_NOT_FOUND with the nearest name and the directories searched. */
 mw_status mw_alloy_find(const char *name, const char *const dirs[], size_t n_dir, mw_alloy **out, mw_error *err);
 

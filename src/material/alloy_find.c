@@ -17,6 +17,7 @@ typedef struct entry {
     mw_json json;
     const char *name;
     const cJSON *designations; /* may be NULL or of a wrong type: the loader will say so */
+    size_t dir;                /* which folder it lies in */
 } entry;
 
 typedef struct catalogue {
@@ -103,7 +104,7 @@ static mw_status list_files(const char *dir, char ***files, size_t *n, mw_error 
 }
 
 /* Opens one file; keeps it when it is an alloy card, counts it when it cannot be read. */
-static mw_status add_file(catalogue *c, const char *dir, const char *file, mw_error *err)
+static mw_status add_file(catalogue *c, const char *dir, size_t dir_number, const char *file, mw_error *err)
 {
     if (c->n == c->room) {
         const size_t room = c->room == 0 ? 16 : c->room * 2;
@@ -113,7 +114,7 @@ static mw_status add_file(catalogue *c, const char *dir, const char *file, mw_er
         c->item = larger;
         c->room = room;
     }
-    entry e = {0};
+    entry e = {.dir = dir_number};
     const size_t length = strlen(dir), size = length + strlen(file) + 2;
     e.path = malloc(size);
     if (e.path == NULL)
@@ -142,13 +143,13 @@ static mw_status add_file(catalogue *c, const char *dir, const char *file, mw_er
     return status == MW_NO_MEMORY ? no_memory(err) : MW_OK;
 }
 
-static mw_status add_folder(catalogue *c, const char *dir, mw_error *err)
+static mw_status add_folder(catalogue *c, const char *dir, size_t dir_number, mw_error *err)
 {
     char **files = NULL;
     size_t n = 0;
     mw_status status = list_files(dir, &files, &n, err);
     for (size_t i = 0; i < n && status == MW_OK; i++)
-        status = add_file(c, dir, files[i], err);
+        status = add_file(c, dir, dir_number, files[i], err);
     mw_names_free(files, n);
     return status;
 }
@@ -189,38 +190,97 @@ static const char *bare(const char *designation)
     return at;
 }
 
-static bool has_designation(const entry *e, const char *word)
+/* Whether one of the card's designations, whole or bare, is `same` as the word. */
+static bool has_designation(const entry *e, const char *word, bool (*same)(const char *, const char *))
 {
     if (!cJSON_IsArray(e->designations))
         return false;
     for (const cJSON *d = e->designations->child; d != NULL; d = d->next)
-        if (cJSON_IsString(d) &&
-            (same_but_blanks(d->valuestring, word) || same_but_blanks(bare(d->valuestring), word)))
+        if (cJSON_IsString(d) && (same(d->valuestring, word) || same(bare(d->valuestring), word)))
             return true;
     return false;
 }
 
-/* The card that `word` means among item[from..n-1] (one folder): a name goes before a designation. MW_NOT_FOUND
- * without text when there is none. Two that match alike are refused: which one was meant cannot be known. */
-static mw_status pick(const catalogue *c, size_t from, const char *word, const entry **out, mw_error *err)
+static bool is_letter(char c)
 {
-    for (int by_name = 1; by_name >= 0; by_name--) {
-        const entry *found = NULL;
-        for (size_t i = from; i < c->n; i++) {
-            const entry *e = &c->item[i];
-            if (!(by_name ? same_but_blanks(e->name, word) : has_designation(e, word)))
-                continue;
-            if (found != NULL)
-                return mw_fail(err, MW_BAD_FILE, NULL, 0,
-                               "\"%.80s\" is the %s of two cards: %.200s and %.200s; name one by its file", word,
-                               by_name ? "name" : "designation", found->path, e->path);
-            found = e;
-        }
-        *out = found;
-        if (found != NULL)
-            return MW_OK;
+    return (c >= 'a' && c <= 'z') || (c >= 'A' && c <= 'Z');
+}
+
+static bool is_digit(char c)
+{
+    return c >= '0' && c <= '9';
+}
+
+/* Letters and digits alone, in one case. */
+static void plain_word(const char *text, char *out, size_t size)
+{
+    size_t n = 0;
+    for (; *text != '\0' && n + 1 < size; text++)
+        if (is_letter(*text) || is_digit(*text))
+            out[n++] = (char)(*text >= 'A' && *text <= 'Z' ? *text - 'A' + 'a' : *text);
+    out[n] = '\0';
+}
+
+/* The same letters and digits ("Ti6Al4V"); or a number with letters of somebody's own before it ("alloy 718", "SS 316L"). */
+static bool loosely_same(const char *a, const char *b)
+{
+    char x[80], y[80];
+    plain_word(a, x, sizeof x);
+    plain_word(b, y, sizeof y);
+    const size_t n = strlen(x), m = strlen(y);
+    if (n == 0 || m < n || strcmp(y + m - n, x) != 0)
+        return false;
+    bool letters = m == n || is_digit(x[0]);
+    for (size_t i = 0; i < m - n; i++)
+        letters = letters && is_letter(y[i]);
+    return letters;
+}
+
+typedef enum how { BY_NAME, BY_DESIGNATION, NEAR_NAME, NEAR_DESIGNATION, HOWS } how;
+
+static bool meant(const entry *e, const char *word, how by)
+{
+    switch (by) {
+    case BY_NAME:
+        return same_but_blanks(e->name, word);
+    case BY_DESIGNATION:
+        return has_designation(e, word, same_but_blanks);
+    case NEAR_NAME:
+        return loosely_same(e->name, word);
+    default:
+        return has_designation(e, word, loosely_same);
     }
-    return MW_NOT_FOUND;
+}
+
+/* The one card of a folder that `word` means in this way. MW_NOT_FOUND without text when there is none. Two that match alike
+ * are refused: which one was meant cannot be known. */
+static mw_status pick(const catalogue *c, size_t dir, const char *word, how by, const entry **out, mw_error *err)
+{
+    static const char *const role[HOWS] = {"the name", "the designation", "near the name", "near the designation"};
+    *out = NULL;
+    for (size_t i = 0; i < c->n; i++) {
+        const entry *e = &c->item[i];
+        if (e->dir != dir || !meant(e, word, by))
+            continue;
+        if (*out != NULL)
+            return mw_fail(err, MW_BAD_FILE, NULL, 0, "\"%.80s\" is %s of two cards: %.200s and %.200s; name one by its file", word, role[by],
+                           (*out)->path, e->path);
+        *out = e;
+    }
+    return *out == NULL ? MW_NOT_FOUND : MW_OK;
+}
+
+/* First folder first, and in a folder the name before a designation; loose matches only when no folder has it in so many words. */
+static mw_status pick_from_all(const catalogue *c, size_t n_dir, const char *word, const entry **out, mw_error *err)
+{
+    mw_status status = MW_NOT_FOUND;
+    for (int near = 0; near < 2; near++)
+        for (size_t dir = 0; dir < n_dir && status == MW_NOT_FOUND; dir++) {
+            status = pick(c, dir, word, near ? NEAR_NAME : BY_NAME, out, err);
+            if (status == MW_NOT_FOUND)
+                status = pick(c, dir, word, near ? NEAR_DESIGNATION : BY_DESIGNATION, out, err);
+        }
+    return status;
 }
 
 /* ---- nothing found ---- */
@@ -296,15 +356,14 @@ mw_status mw_alloy_find(const char *name, const char *const dirs[], size_t n_dir
     if (strchr(name, '/') != NULL || ends_in(name, ".json"))
         return mw_alloy_load(name, out, err);
     catalogue c = {0};
-    mw_status status = MW_NOT_FOUND;
-    for (size_t i = 0; i < n_dir && status == MW_NOT_FOUND; i++) {
-        const size_t from = c.n;
-        const entry *found = NULL;
-        const mw_status added = add_folder(&c, dirs[i], err);
-        status = added != MW_OK ? added : pick(&c, from, name, &found, err);
-        if (status == MW_OK)
-            status = mw_alloy_load(found->path, out, err);
-    }
+    const entry *found = NULL;
+    mw_status status = MW_OK;
+    for (size_t i = 0; i < n_dir && status == MW_OK; i++)
+        status = add_folder(&c, dirs[i], i, err);
+    if (status == MW_OK)
+        status = pick_from_all(&c, n_dir, name, &found, err);
+    if (status == MW_OK)
+        status = mw_alloy_load(found->path, out, err);
     if (status == MW_NOT_FOUND)
         status = not_found(&c, name, dirs, n_dir, err);
     free_catalogue(&c);
@@ -318,7 +377,7 @@ mw_status mw_alloy_names(const char *const dirs[], size_t n_dir, char ***names, 
     *names = NULL;
     *n = 0;
     for (size_t i = 0; i < n_dir && status == MW_OK; i++)
-        status = add_folder(&c, dirs[i], err);
+        status = add_folder(&c, dirs[i], i, err);
     for (size_t i = 0; i < c.n && status == MW_OK; i++) {
         bool known = false;
         for (size_t j = 0; j < *n && !known; j++)

@@ -99,6 +99,9 @@ static void finds_by_name_and_designation(void **state)
     finds(s, "S11100", "two/c.json");
     finds(s, "z1", "two/d.json");
     finds(s, "Zinc", "two/d.json");
+    finds(s, "steel9", "one/b.json");           /* letters and digits alone */
+    finds(s, "alloy 91234", "one/b.json");      /* a number after somebody's own letters */
+    finds(s, "EN-9.1234", "one/b.json");
 }
 
 static void finds_by_path(void **state)
@@ -137,6 +140,10 @@ static void missing_card_names_the_nearest(void **state)
     misses(s, "UNS S99901", MW_NOT_FOUND, number, 2);
     const char *const bare_number[] = {"did you mean \"9.1234\"?"};
     misses(s, "9.1235", MW_NOT_FOUND, bare_number, 1);
+    const char *const prefix[] = {"no alloy card \"MySteel-9\""}; /* letters before letters are another word */
+    misses(s, "MySteel-9", MW_NOT_FOUND, prefix, 1);
+    const char *const digits[] = {"no alloy card \"X1 91234\""};
+    misses(s, "X1 91234", MW_NOT_FOUND, digits, 1);
     const char *const far[] = {"\"qqqqqqqqqq\"", "there are: ", "Brass 5, Steel-9", "Zinc"};
     misses(s, "qqqqqqqqqq", MW_NOT_FOUND, far, 4);
     misses(s, "Lot", MW_NOT_FOUND, NULL, 0);
