@@ -214,10 +214,12 @@ static void the_equations_hold(void **state)
         const mw_source on_top = {p.absorptivity * in.power_W / (1 + p.cavity_depth_m / inside.width_m),
                                   in.speed_m_per_s, in.d4sigma_m / 4};
         assert_int_equal(mw_gaussian_pool(&on_top, &in.melt, &surface), MW_OK);
-        CHECK_REL(p.pool.width_m, c->flow_widening * surface.width_m, 1e-7); /* the accuracy stated for the Gaussian pool */
+        const mw_pool *wider = surface.width_m > flat.width_m ? &surface : &flat;
+        CHECK_REL(p.pool.width_m, c->flow_widening * wider->width_m, 1e-7); /* the accuracy stated for the Gaussian pool */
         CHECK_REL(p.pool.length_m, inside.length_m, 1e-7);
         /* The place of an extreme is good to the root of what its size is good to. */
-        CHECK_NEAR(p.pool.width_at_m, surface.width_at_m, 3e-4 * surface.length_m);
+        if (fabs(surface.width_m / flat.width_m - 1) > 1e-6)
+            CHECK_NEAR(p.pool.width_at_m, wider->width_at_m, 3e-4 * wider->length_m);
         assert_true(p.pool.depth_at_m == flat.depth_at_m);
         assert_true(p.pool.front_m == inside.front_m && p.pool.back_m == inside.back_m);
         assert_true(p.pool.peak_temperature_K == inside.peak_temperature_K && p.pool.peak_at_m == inside.peak_at_m);
@@ -231,48 +233,44 @@ static void the_equations_hold(void **state)
     gsl_qrng_free(sequence);
 }
 
-/* Depth over the whole field; width over the part for which the header promises it. Steps of 1.5 % from just below
- * the onset, where the cavity opens, and of 10 % further up. A millionth part allowed for the solver (stated 1e-7).
- */
-static void width_and_depth_never_fall(double slowest, double brightest, int settings, bool width_too)
+/* The dip in width that the header allows just above the onset. */
+static double allowed_dip(const mw_keyhole_input *in)
 {
+    if (in->absorptivity > 0.45 || in->speed_m_per_s < 0.1)
+        return 0.21;
+    return in->melt.conductivity_W_per_mK > 60 ? 0.10 : 0.025;
+}
+
+/* Steps of 1.5 % from just below the onset, where the cavity opens, and of 10 % further up. A millionth part allowed for
+ * the solver (stated 1e-7). Width is held against the widest pool at any lower power. */
+static void depth_never_falls_and_width_hardly(void **state)
+{
+    (void)state;
     gsl_qrng *sequence = gsl_qrng_alloc(gsl_qrng_sobol, 6);
     int pairs = 0;
-    for (int i = 0; i < settings; i++) {
+    for (int i = 0; i < 700; i++) {
         mw_keyhole_input in;
         mw_keyhole_pool now, before;
-        draw(sequence, slowest, brightest, &in);
+        draw(sequence, i % 2 == 0 ? 0.1 : 0.02, i % 2 == 0 ? 0.45 : 1, &in);
         assert_true(mw_keyhole_pool_compute(&in, &mw_keyhole_defaults, &before) >= 0);
         const double onset_W = in.power_W / before.onset_index;
         in.power_W = fmax(20, 0.9 * onset_W);
         assert_true(mw_keyhole_pool_compute(&in, &mw_keyhole_defaults, &before) >= 0);
+        double widest = before.pool.width_m;
         while (in.power_W < fmin(1500, 6 * onset_W)) {
             in.power_W *= in.power_W < 1.5 * onset_W ? 1.015 : 1.1;
             assert_true(mw_keyhole_pool_compute(&in, &mw_keyhole_defaults, &now) >= 0);
-            const double slack = 1 - 1e-6;
-            if (!(now.pool.depth_m >= slack * before.pool.depth_m) ||
-                (width_too && !(now.pool.width_m >= slack * before.pool.width_m)))
+            if (!(now.pool.depth_m >= (1 - 1e-6) * before.pool.depth_m) || !(now.pool.width_m >= (1 - allowed_dip(&in)) * widest))
                 fail_msg("at %.9g W, %.6g m/s, %.6g m, A0 %.6g, k %.6g: width %.9g after %.9g, depth %.9g after %.9g",
                          in.power_W, in.speed_m_per_s, in.d4sigma_m, in.absorptivity, in.melt.conductivity_W_per_mK,
-                         now.pool.width_m, before.pool.width_m, now.pool.depth_m, before.pool.depth_m);
+                         now.pool.width_m, widest, now.pool.depth_m, before.pool.depth_m);
             before = now;
+            widest = fmax(widest, now.pool.width_m);
             pairs++;
         }
     }
-    assert_true(pairs > 10 * settings);
+    assert_true(pairs > 7000);
     gsl_qrng_free(sequence);
-}
-
-static void width_and_depth_rise_with_power_in_the_range_of_the_constants(void **state)
-{
-    (void)state;
-    width_and_depth_never_fall(0.1, 0.45, 400, true);
-}
-
-static void depth_rises_with_power_everywhere(void **state)
-{
-    (void)state;
-    width_and_depth_never_fall(0.02, 1, 300, false);
 }
 
 /* A jump would not shrink with the step. The steepest rise over the onset is below d ln/d ln P = 1000 (slow, narrow,
@@ -417,8 +415,7 @@ int main(void)
         cmocka_unit_test(the_worked_cases_come_out),
         cmocka_unit_test(cases_with_widening_come_out),
         cmocka_unit_test(the_equations_hold),
-        cmocka_unit_test(width_and_depth_rise_with_power_in_the_range_of_the_constants),
-        cmocka_unit_test(depth_rises_with_power_everywhere),
+        cmocka_unit_test(depth_never_falls_and_width_hardly),
         cmocka_unit_test(nothing_jumps_at_the_onset),
         cmocka_unit_test(constants_do_what_they_say),
         cmocka_unit_test(a_layer_takes_depth_and_nothing_else),

@@ -34,6 +34,8 @@ int main(void)
 {
     (void)printf("meltwright %s against published measurements\n\n", mw_version());
     validate_tracks();
+    validate_cavity();
+    validate_contest();
     validate_cubes();
     validate_balling();
     return fflush(stdout) != 0;
