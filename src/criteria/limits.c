@@ -9,7 +9,7 @@
 const mw_limits *mw_verdict_limits(mw_pool_kind kind)
 {
     static const mw_limits table[MW_POOL_KIND_COUNT] = {
-        [MW_POOL_CAVITY] = {1.41, 2.0, 8.1, 3.2,
+        [MW_POOL_CAVITY] = {1.41, 2.2, 8.0, 4.0,
                             "overlap index (h/W)^2+(t/D)^2 of the cavity pool with the nominal layer; melt energy ratio "
                             "A0 P/(v h t Hm)",
                             CUBES},

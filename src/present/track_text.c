@@ -180,7 +180,7 @@ void mw_caution_text(FILE *to, const mw_alloy *alloy)
                       "local codes, the machine's rules and licensed practice come first (ISO/ASTM 52931, IEC 60825-1, NFPA 484).\n");
     if (has_caution(alloy, "reactive-powder"))
         (void)fprintf(to, "This powder burns: only class D extinguishing, never water or CO2 on burning metal; soot and filters can ignite by themselves.\n");
-    if (has_caution(alloy, "nickel") || has_caution(alloy, "cobalt"))
+    if (has_caution(alloy, "nickel") || has_caution(alloy, "cobalt") || has_caution(alloy, "chromium"))
         (void)fprintf(to, "Its dust holds nickel, cobalt or chromium: sensitising, some of it carcinogenic; respirator and exposure limits apply.\n");
 }
 
