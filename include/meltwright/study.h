@@ -42,6 +42,8 @@ typedef struct mw_plan {
     double surface_tension_N_per_m;
     mw_keyhole_constants constants;
     mw_pool_kind kind;
+    double beam_uncertainty_pct; /* standard uncertainty of the beam diameter; mw_plan_make leaves 0, as good as that of published tracks. The
+                                    intervals widen where it is more than theirs */
     bool check_case; /* all four constants given */
 } mw_plan;
 

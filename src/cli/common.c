@@ -140,6 +140,14 @@ mw_status read_setting(const arguments *args, bool beam_required, mw_setting *ou
     return status == MW_OK ? read_beam(args, beam_required, &out->d4sigma_m, err) : status;
 }
 
+mw_status read_beam_doubt(const arguments *args, double *out_pct, mw_error *err)
+{
+    const mw_status status = read_quantity(args, OPT_BEAM_DOUBT, MW_PLAIN, out_pct, err);
+    if (status == MW_OK && !(*out_pct >= 0 && *out_pct <= 100))
+        return mw_fail(err, MW_BAD_VALUE, NULL, 0, "--beam-uncertainty %.6g is outside 0 to 100 percent", *out_pct);
+    return status;
+}
+
 mw_status read_beam(const arguments *args, bool required, double *d4sigma_m, mw_error *err)
 {
     /* Of a Gaussian: FWHM = 2 sqrt(2 ln 2) sigma, 1/e2 radius = 2 sigma, D4sigma = 4 sigma. */
@@ -247,6 +255,8 @@ mw_status make_plan(const arguments *args, mw_alloy **alloy, mw_plan *plan, mw_e
         status = load_alloy(args->value[OPT_ALLOY], alloy, err);
     if (status == MW_OK)
         status = mw_plan_make(*alloy, model, &overrides, preheat_K, plan, err);
+    if (status == MW_OK)
+        status = read_beam_doubt(args, &plan->beam_uncertainty_pct, err);
     if (status != MW_OK) {
         mw_alloy_free(*alloy);
         *alloy = NULL;

@@ -29,6 +29,8 @@ bool given(const arguments *args, option_id id);
 mw_status read_quantity(const arguments *args, option_id id, mw_quantity quantity, double *si, mw_error *err);
 mw_status read_axis(const arguments *args, option_id id, mw_quantity quantity, double **value, size_t *n, mw_error *err);
 mw_status read_model(const arguments *args, mw_model *out, mw_error *err);
+/* Standard uncertainty of the beam diameter in percent, 0 to 100; unchanged when not given. */
+mw_status read_beam_doubt(const arguments *args, double *out_pct, mw_error *err);
 mw_status read_overrides(const arguments *args, mw_overrides *out, mw_error *err);
 /* D4sigma in m from the one beam option; NaN when none is given and `required` is false. */
 mw_status read_beam(const arguments *args, bool required, double *d4sigma_m, mw_error *err);

@@ -22,6 +22,7 @@ enum { ON_CARD = 1, ON_TRACK = 2, ON_SWEEP = 4, ON_MAP = 8, ON_GRIDS = ON_SWEEP 
     X(FWHM, "fwhm", 0, true, ON_MODELS, "UM", NULL, "or: full width at half maximum of a Gaussian beam")                                   \
     X(RADIUS, "radius-1e2", 0, true, ON_MODELS, "UM", NULL, "or: 1/e2 radius")                                                             \
     X(DIAMETER, "diameter-1e2", 0, true, ON_MODELS, "UM", NULL, "or: 1/e2 diameter")                                                       \
+    X(BEAM_DOUBT, "beam-uncertainty", 0, true, ON_MODELS, "PCT", "20", "standard uncertainty of the beam diameter, percent; beyond 20 the intervals widen") \
     X(PREHEAT, "preheat", 0, true, ON_ALL, "C", "20", "plate temperature; C or K")                                                         \
     X(MODEL, "model", 0, true, ON_MODELS, "WORD", "default", "default, gaussian or rosenthal")                                             \
     X(ABSORPTIVITY, "absorptivity", 0, true, ON_MODELS, "A", "the card's coupling", "absorptivity of the flat surface, 0 to 1")            \

@@ -40,6 +40,7 @@ struct row_source {
     int at[ROW_COLUMN_COUNT]; /* column in the file, or -1 */
     row_values defaults;
     mw_model model;
+    double beam_uncertainty_pct;
     kept_card card[MOST_CARDS];
     size_t n_card;
     const mw_alloy *card_list[MOST_CARDS];
@@ -82,6 +83,8 @@ static mw_status read_defaults(row_source *s, mw_error *err)
         status = read_overrides(args, &s->defaults.overrides, err);
     if (status == MW_OK)
         status = read_model(args, &s->model, err);
+    if (status == MW_OK)
+        status = read_beam_doubt(args, &s->beam_uncertainty_pct, err);
     return status;
 }
 
@@ -254,6 +257,7 @@ mw_status rows_plan(row_source *s, const row_values *values, const mw_plan **pla
         k->overrides = values->overrides;
         k->plan.preheat_K = values->setting.preheat_K;
         k->status = mw_plan_make(alloy, s->model, &values->overrides, values->setting.preheat_K, &k->plan, &k->trouble);
+        k->plan.beam_uncertainty_pct = s->beam_uncertainty_pct;
     }
     if (k->status != MW_OK) {
         if (err != NULL)

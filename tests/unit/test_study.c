@@ -190,6 +190,62 @@ static void intervals_hold_the_prediction_and_keep_their_order(void **state)
     gsl_qrng_free(q);
 }
 
+static double spread(const mw_plan *plan, const mw_setting *s, bool of_depth)
+{
+    mw_result r;
+    assert_true(mw_evaluate(plan, s, false, &r, NULL) >= 0);
+    return of_depth ? log(r.depth_hi_m / r.depth_lo_m) : log(r.width_hi_m / r.width_lo_m);
+}
+
+static void doubt_about_the_beam_widens_the_intervals(void **state)
+{
+    (void)state;
+    mw_plan plan = plan_for(MW_MODEL_DEFAULT);
+    const mw_setting s = {200, 0.8, 1e-4, 3e-5, 8e-5, 293.15};
+    const double width = spread(&plan, &s, false), depth = spread(&plan, &s, true);
+    plan.beam_uncertainty_pct = 20; /* as published beams: nothing is added */
+    assert_true(spread(&plan, &s, false) == width && spread(&plan, &s, true) == depth);
+    double before_w = width, before_d = depth;
+    for (double pct = 25; pct <= 100; pct += 25) {
+        plan.beam_uncertainty_pct = pct;
+        assert_true(spread(&plan, &s, false) > before_w && spread(&plan, &s, true) > before_d);
+        before_w = spread(&plan, &s, false);
+        before_d = spread(&plan, &s, true);
+    }
+    assert_true(before_d / depth > before_w / width); /* depth goes as one over the beam, width hardly */
+}
+
+/* Every alloy that is shipped gives pools at every preheat its card allows, hotter plates larger ones. */
+static void every_shipped_alloy_gives_pools(void **state)
+{
+    (void)state;
+    static const char *const folder[] = {"alloys"};
+    char **name;
+    size_t n;
+    assert_int_equal(mw_alloy_names(folder, 1, &name, &n, NULL), MW_OK);
+    assert_true(n >= 16);
+    for (size_t i = 0; i < n; i++) {
+        mw_alloy *alloy;
+        mw_error err = {MW_OK, ""};
+        if (mw_alloy_find(name[i], folder, 1, &alloy, &err) != MW_OK)
+            fail_msg("%s: %s", name[i], err.text);
+        double before = 0;
+        for (double preheat_K = 293.15; preheat_K < 700; preheat_K += 200) {
+            mw_plan plan;
+            mw_result r;
+            const mw_setting s = {900, 0.3, 1e-4, 3e-5, 8e-5, preheat_K}; /* melts even copper */
+            if (mw_plan_make(alloy, MW_MODEL_DEFAULT, NULL, preheat_K, &plan, &err) != MW_OK || mw_evaluate(&plan, &s, false, &r, &err) < 0)
+                fail_msg("%s at %.0f K: %s", name[i], preheat_K, err.text);
+            if (!(r.pool.width_m > before && r.pool.depth_m > 0 && r.pool.length_m >= r.pool.width_m / 2))
+                fail_msg("%s at %.0f K: width %.6g m after %.6g, depth %.6g, length %.6g", name[i], preheat_K, r.pool.width_m, before, r.pool.depth_m,
+                         r.pool.length_m);
+            before = r.pool.width_m;
+        }
+        mw_alloy_free(alloy);
+    }
+    mw_names_free(name, n);
+}
+
 static mw_verdict verdict_at(const mw_plan *plan, mw_setting s)
 {
     mw_result r;
@@ -475,6 +531,8 @@ int main(void)
         cmocka_unit_test(settings_outside_reason_are_refused_by_name),
         cmocka_unit_test(outside_the_record_is_named_and_flagged),
         cmocka_unit_test(intervals_hold_the_prediction_and_keep_their_order),
+        cmocka_unit_test(doubt_about_the_beam_widens_the_intervals),
+        cmocka_unit_test(every_shipped_alloy_gives_pools),
         cmocka_unit_test(margins_are_where_the_verdict_flips),
         cmocka_unit_test(margins_of_what_is_not_nominal_are_zero),
         cmocka_unit_test(an_outlook_names_the_verdict_beyond_each_turn),

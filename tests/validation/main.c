@@ -36,6 +36,7 @@ int main(void)
     validate_tracks();
     validate_cavity();
     validate_contest();
+    validate_slopes();
     validate_cubes();
     validate_balling();
     return fflush(stdout) != 0;

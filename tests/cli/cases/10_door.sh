@@ -48,11 +48,15 @@ refuse 'speed of the wrong magnitude' 3 'speed 800000 mm/s is outside what can b
 refuse 'layer of the wrong magnitude' 3 'layer 30000 um is outside what can be right' -- track $B --hatch 100 --layer 30mm
 refuse 'preheat above the solidus' 3 'preheat 1500 C is outside what the card of 316L allows' -- track $B --preheat 1500
 refuse 'absorptivity above one' 3 'absorptivity 35 is outside 0.001 to 1' -- track $B --absorptivity 35
+refuse 'beam uncertainty out of reason' 3 'beam-uncertainty 120 is outside 0 to 100 percent' -- track $B --beam-uncertainty 120
 refuse 'unknown alloy' 3 'did you mean "316L"' -- track --alloy 361L --d4sigma 80 --power 200 --speed 800
 refuse 'unknown model' 3 "model: 'gausian' is not default, gaussian or rosenthal; did you mean gaussian?" -- track $B --model gausian
 refuse 'unknown format' 3 "format: 'jsn' is not text, csv or json; did you mean json?" -- track $B --format jsn
 refuse 'alloy file that is not there' 3 'no-such.json' -- track --alloy no-such.json --d4sigma 80 --power 200 --speed 800
 for t in 0 -1 2.5 x 5000; do refuse "threads $t" 3 'threads' -- sweep $B --threads $t; done
+# The other spellings of an alloy, and doubt about the beam.
+for a in 'alloy 718' N07718 '2.4668'; do expect "alloy as $a" 0 '^718 ' - -- card show "$a"; done
+expect 'a doubtful beam' 0 'depth .* to  2[0-9][0-9] um' - -- track $B --beam-uncertainty 50
 # Every beam form is the same beam: FWHM = 0.5887 D4sigma of a Gaussian (ISO 11146-1 for D4sigma).
 for b in '--d4sigma 80' '--diameter-1e2 80' '--radius-1e2 40' '--radius-1e2 0.04mm' '--fwhm 47.09640090061899'; do
     expect "beam as $b" 0 '^200,800,,0,\(80\|79.99999999999[0-9]*\|80.00000000000[0-9]*\),20,1[0-9][0-9]\.' - -- track --alloy 316L $b --power 200 --speed 800 --format csv
