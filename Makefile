@@ -67,9 +67,9 @@ plots: setup ## redraw the gallery in plots/
 	@$(MAKE) --no-print-directory all
 	@sh tests/demo/gallery.sh $(PROGRAM)
 
-validate: setup ## accuracy against published measurements
+validate: setup ## accuracy against published measurements; draws plots/parity.png
 	@$(MAKE) --no-print-directory $(B)/validate
-	@$(B)/validate
+	@$(B)/validate plots/parity.png
 
 coverage: setup ## branch coverage of each storey (gcov)
 	@$(MAKE) --no-print-directory COV=1 test

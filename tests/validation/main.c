@@ -1,5 +1,6 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
- * Prints how far meltwright is from published measurements (tests/data/measured, sources there). Run from the repository root. */
+ * Prints how far meltwright is from published measurements (tests/data/measured, sources there). Run from the repository root;
+ * the argument is where the parity plot goes. */
 #include <stdlib.h>
 
 #include "meltwright/version.h"
@@ -30,10 +31,10 @@ mw_alloy *find_card(const char *name)
     return alloy;
 }
 
-int main(void)
+int main(int argc, char **argv)
 {
     (void)printf("meltwright %s against published measurements\n\n", mw_version());
-    validate_tracks();
+    validate_tracks(argc > 1 ? argv[1] : NULL);
     validate_cavity();
     validate_contest();
     validate_slopes();

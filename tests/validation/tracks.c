@@ -5,6 +5,8 @@
 #include <math.h>
 #include <stdlib.h>
 
+#include "meltwright/parityplot.h"
+
 #include "stats.h"
 #include "track_sets.h"
 
@@ -76,19 +78,52 @@ static void print_table(const char *title, const summary *s, const double *coupl
     }
 }
 
-void validate_tracks(void)
+/* The shipped predictions as a picture: width, and depth with conduction tracks as outlines. */
+static void draw_parity(const track_rows rows[], predicted shipped[][MOST_ROWS], const summary s[], const char *path)
+{
+    enum { WIDTH, DEPTH, PANELS };
+    static double measured[PANELS][TRACK_SETS][MOST_ROWS], computed[PANELS][TRACK_SETS][MOST_ROWS];
+    static bool conduction[TRACK_SETS][MOST_ROWS];
+    static char note[TRACK_SETS][48];
+    mw_parity_points points[PANELS][TRACK_SETS];
+    const char *name[TRACK_SETS], *notes[TRACK_SETS];
+    for (size_t k = 0; k < TRACK_SETS; k++) {
+        for (size_t i = 0; i < rows[k].n; i++) {
+            const track_row *t = &rows[k].row[i];
+            measured[WIDTH][k][i] = 1e6 * t->width_m;
+            measured[DEPTH][k][i] = 1e6 * t->depth_m;
+            computed[WIDTH][k][i] = 1e6 * shipped[k][i].width_m;
+            computed[DEPTH][k][i] = 1e6 * shipped[k][i].depth_m;
+            conduction[k][i] = t->depth_m < 0.5 * t->width_m;
+        }
+        points[WIDTH][k] = (mw_parity_points){rows[k].n, measured[WIDTH][k], computed[WIDTH][k], NULL};
+        points[DEPTH][k] = (mw_parity_points){rows[k].n, measured[DEPTH][k], computed[DEPTH][k], conduction[k]};
+        (void)snprintf(note[k], sizeof note[k], "%zu, width %.0f %%", rows[k].n, s[k].width);
+        name[k] = track_sets[k].name;
+        notes[k] = note[k];
+    }
+    const mw_parity_panel panel[PANELS] = {{"melt width (\xc2\xb5m)", points[WIDTH]}, {"melt depth (\xc2\xb5m); outlines: in conduction", points[DEPTH]}};
+    const mw_parity_picture picture = {.title = "Published single tracks, predicted with one coupling and no calibration",
+                                       .subtitle = "each set: number of tracks, median absolute error of width; offsets of whole sets in depth follow the stated beam",
+                                       .footer = "sources and doubts: tests/data/measured/SOURCES.md",
+                                       .n_group = TRACK_SETS, .group = name, .note = notes, .n_panel = PANELS, .panel = panel};
+    mw_error err;
+    stop_on(mw_parity_draw(&picture, path, true, &err), &err);
+}
+
+void validate_tracks(const char *picture)
 {
     static track_rows rows[TRACK_SETS];
     static coupling_scan scan[TRACK_SETS];
     static summary shipped[TRACK_SETS], left_out[TRACK_SETS];
-    static predicted as_shipped[MOST_ROWS];
+    static predicted as_shipped[TRACK_SETS][MOST_ROWS];
     double card_coupling[TRACK_SETS], fitted[TRACK_SETS];
     predicted *all = malloc(TRACK_SETS * COUPLINGS * MOST_ROWS * sizeof *all);
     for (size_t s = 0; s < TRACK_SETS; s++) {
         mw_alloy *alloy = find_card(track_sets[s].card);
         load_track_set(&track_sets[s], &rows[s]);
-        predict(alloy, NAN, &rows[s], as_shipped);
-        shipped[s] = summarise_tracks(&rows[s], as_shipped);
+        predict(alloy, NAN, &rows[s], as_shipped[s]);
+        shipped[s] = summarise_tracks(&rows[s], as_shipped[s]);
         predicted *const here = &all[s * COUPLINGS * MOST_ROWS];
         for (size_t c = 0; c < COUPLINGS; c++)
             predict(alloy, coupling_at(c), &rows[s], &here[c * MOST_ROWS]);
@@ -106,4 +141,6 @@ void validate_tracks(void)
     print_table("As shipped (coupling of the card)", shipped, card_coupling);
     print_table("Coupling A0 fitted to the other papers (paper left out as a whole)", left_out, fitted);
     free(all);
+    if (picture != NULL)
+        draw_parity(rows, as_shipped, shipped, picture);
 }

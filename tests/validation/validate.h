@@ -7,7 +7,8 @@
 
 #include "meltwright/study.h"
 
-void validate_tracks(void);
+/* Also draws the parity plot to `picture` unless it is NULL. */
+void validate_tracks(const char *picture);
 void validate_cubes(void);
 void validate_balling(void);
 void validate_contest(void);
