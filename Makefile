@@ -98,6 +98,22 @@ $(B)/validate: $(VAL_OBJ) $(B)/libmeltwright.a
 
 $(B)/src/present/%.o: ALLC += $(PLPLOT_C)
 
+# Tables of the Gaussian pool, made from the exact solver by a tool that is built first (without sanitizers: it is arithmetic only).
+GEN_SRC := src/generate/pool_tables.c src/model/gaussian.c src/model/gaussian_integral.c src/model/cylinder.c
+$(B)/gen/pool_tables: $(GEN_SRC) $(wildcard src/model/*.h include/meltwright/*.h) $(B)/flags
+	@mkdir -p $(@D)
+	$(if $(V),,@echo '  tool $@')
+	$(Q)$(CC) -std=c11 -O2 -Iinclude -Isrc $(WARN) $(if $(OMPF),,-Wno-unknown-pragmas) $(NUM) $(OMPF) -o $@ $(GEN_SRC) -lgsl -lgslcblas -lm
+
+$(B)/gen/gaussian_table_data.h: $(B)/gen/pool_tables
+	$(if $(V),,@echo '  make $@')
+	$(Q)$< > $@
+
+# The loops over lanes are worth the compiler's full effort.
+LANES := $(B)/src/model/gaussian_table.o $(B)/src/study/survey_lanes.o
+$(LANES): ALLC += -I$(B)/gen $(if $(COV),,-O3)
+$(B)/src/model/gaussian_table.o: $(B)/gen/gaussian_table_data.h
+
 $(B)/%.o: %.c $(B)/flags
 	@mkdir -p $(@D)
 	$(if $(V),,@echo '  cc   $<')
