@@ -5,6 +5,11 @@
 
 #include "meltwright/study.h"
 
+/* Rising axes with values in reason, and not too many cells. Every axis has at least one value. */
+mw_status mw_grid_check(const mw_grid *grid, mw_error *err);
+/* Leaves only the powers that the wanted cells need; cells are then counted from the first of them. */
+mw_status mw_grid_cut(mw_grid *grid, mw_error *err);
+
 /* Fills the interval fields of a result that has its pool. */
 void mw_intervals_at(const mw_plan *plan, bool outside, mw_result *result);
 

@@ -28,7 +28,7 @@ static mw_status check_axis(const char *name, const double *value, size_t n, mw_
 }
 
 /* Both ends of every axis through the check of a setting; between them nothing worse can stand. */
-static mw_status check_grid(const mw_grid *g, mw_error *err)
+mw_status mw_grid_check(const mw_grid *g, mw_error *err)
 {
     mw_status status = check_axis("power", g->power_W, g->n_power, err);
     if (status == MW_OK)
@@ -160,8 +160,7 @@ static mw_status write_cells(const sweep *s, mw_result_sink sink, void *to)
     return MW_OK;
 }
 
-/* Leaves only the powers that the wanted cells need; cells are then counted from the first of them. */
-static mw_status cut_to_part(mw_grid *g, mw_error *err)
+mw_status mw_grid_cut(mw_grid *g, mw_error *err)
 {
     const size_t per_power = g->n_speed * g->n_hatch * g->n_layer, all = g->n_power * per_power;
     if (g->n_cell == 0) {
@@ -196,9 +195,9 @@ mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, 
 #endif
     if (s.threads <= 0)
         s.threads = 1;
-    mw_status status = check_grid(&s.grid, err);
+    mw_status status = mw_grid_check(&s.grid, err);
     if (status == MW_OK)
-        status = cut_to_part(&s.grid, err);
+        status = mw_grid_cut(&s.grid, err);
     if (status != MW_OK)
         return status;
     const size_t n_pairs = s.grid.n_hatch * s.grid.n_layer;

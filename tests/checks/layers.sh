@@ -7,7 +7,7 @@ BEGIN {
     n = split("base material model criteria study present cli generate", name, " ")
     for (i = 1; i <= n; i++) rank[name[i]] = i
     # public headers belong to the storey that implements them
-    split("version:base status:base text:base units:base pool:base alloy:material rosenthal:model gaussian:model keyhole:model criteria:criteria study:study table:present track_text:present mapplot:present parityplot:present", pair, " ")
+    split("version:base status:base text:base units:base pool:base alloy:material rosenthal:model gaussian:model keyhole:model criteria:criteria study:study survey:study table:present track_text:present mapplot:present parityplot:present", pair, " ")
     for (i in pair) { split(pair[i], p, ":"); home[p[1]] = p[2] }
 }
 FNR == 1 { split(FILENAME, part, "/"); me = FILENAME ~ /^include/ ? home[substr(part[3], 1, length(part[3]) - 2)] : part[2]; files++
