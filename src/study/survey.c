@@ -15,7 +15,9 @@
 #include "study/survey_lanes.h"
 
 /* Samples in a chunk and powers in a block bound the scratch of a thread (about 5 MB); cells in a block bound the counts (4 bytes each). */
-enum { CHUNK = 1024, MOST_POWERS = 128, MOST_BLOCK_CELLS = 6 << 20, ROWS = 5 };
+enum { CHUNK = 1024, MOST_POWERS = 128, MOST_BLOCK_CELLS = 6 << 20, GROUP = 16 };
+/* Distance of two powers in a workspace row: not a power of two, which would crowd them into the same few cache sets. */
+enum { STRIDE = CHUNK + 16 };
 
 typedef struct survey {
     const mw_plan *plan;
@@ -32,11 +34,14 @@ typedef struct survey {
     size_t first_power, n_power, first_speed, n_speed;
 } survey;
 
+typedef enum quantity { WIDTH, DEPTH, CONDUCTION, ROWS } quantity;
+
 /* One thread's own memory. */
 typedef struct workspace {
-    float *row[ROWS]; /* width, depth, energy, energy_power, weber: [power][sample] */
-    float scratch[2 * CHUNK];
-    double width[MOST_POWERS], depth[MOST_POWERS], conduction[MOST_POWERS], onset[MOST_POWERS];
+    float *row[ROWS];                         /* [power][sample], um */
+    float energy_power[CHUNK];                /* per sample, see survey_lanes.h */
+    float across[CHUNK], down[CHUNK];
+    double group[ROWS][GROUP][MOST_POWERS], onset[MOST_POWERS];
     uint32_t *nominal, *keyhole; /* of the hatches of one layer */
 } workspace;
 
@@ -56,9 +61,9 @@ static void make_pairs(survey *v)
             .balling_factor = (float)exp(ball->layer_slope * g->layer_m[t] / ball->layer_reference_m / ball->weber_slope),
         };
         for (size_t h = 0; h < g->n_hatch; h++) {
-            const double hatch_um = 1e6 * g->hatch_m[h], area = 1 / (hatch_um * layer_um);
+            const double hatch_um = 1e6 * g->hatch_m[h];
             v->pair[t * g->n_hatch + h] =
-                (mw_survey_pair){(float)(hatch_um * hatch_um / v->limits->overlap_half), (float)area, (float)pow(area, v->exponent)};
+                (mw_survey_pair){(float)(hatch_um * hatch_um / v->limits->overlap_half), (float)pow(hatch_um * layer_um, -v->exponent)};
         }
     }
 }
@@ -79,43 +84,49 @@ static mw_keyhole_input input_of(const survey *v, const mw_sample *s, double spe
     return in;
 }
 
-/* Column `i` of the workspace: one sample along the powers of the block. */
-static mw_status fill_sample(const survey *v, const mw_sample *s, double speed_m_per_s, size_t i, workspace *w)
+/* Sample `i`: its pools along the powers of the block as member `j` of the group, and its energy. */
+static mw_status pool_sample(const survey *v, const mw_sample *s, double speed_m_per_s, size_t i, size_t j, workspace *w)
 {
-    const mw_plan *p = v->plan;
     const double *power = v->grid->power_W + v->first_power;
     const mw_keyhole_input in = input_of(v, s, speed_m_per_s);
-    const mw_pool_lanes out = {w->width, w->depth, w->conduction, w->onset};
-    mw_keyhole_constants constants = p->constants;
+    const mw_pool_lanes out = {w->group[WIDTH][j], w->group[DEPTH][j], w->group[CONDUCTION][j], w->onset};
+    mw_keyhole_constants constants = v->plan->constants;
     constants.onset_ratio *= s->onset;
-    const mw_status status = mw_keyhole_line(&in, &constants, power, v->n_power, &out);
-    if (status != MW_OK)
-        return status;
     const double enthalpy = in.melt.volumetric_heat_J_per_m3K * (in.melt.isotherm_K - in.melt.ambient_K);
-    /* The melt energy ratio per watt for a hatch times layer of 1 um2, over its even-odds value. */
-    const double per_W = mw_melt_energy_ratio(in.absorptivity, speed_m_per_s, 1e-6, 1e-6, enthalpy) / v->limits->energy_half;
-    const double weber = p->density_cold_kg_per_m3 * speed_m_per_s * speed_m_per_s / p->surface_tension_N_per_m / mw_balling_constants()->weber;
-    const double power_per_W = pow(per_W, v->exponent);
-    for (size_t k = 0; k < v->n_power; k++) {
-        const size_t at = k * CHUNK + i;
-        w->row[0][at] = (float)(1e6 * w->width[k]);
-        w->row[1][at] = (float)(1e6 * w->depth[k]);
-        w->row[2][at] = (float)(per_W * power[k]);
-        w->row[3][at] = (float)power_per_W;
-        w->row[4][at] = (float)(weber * w->conduction[k]);
-    }
-    return MW_OK;
+    const double energy = mw_melt_energy_ratio(in.absorptivity, speed_m_per_s, 1e-6, 1e-6, enthalpy) / v->limits->energy_half;
+    w->energy_power[i] = (float)pow(energy, v->exponent);
+    return mw_keyhole_line(&in, &constants, power, v->n_power, &out);
 }
 
-/* Fills up to a whole number of lanes with samples that count as lack of fusion without balling. */
-static size_t pad(const survey *v, size_t n, workspace *w)
+/* From [member][power] in m to [power][sample] in um. */
+static void turn_group(const survey *v, size_t first, workspace *w)
 {
-    const size_t whole = (n + MW_SURVEY_LANES - 1) / MW_SURVEY_LANES * MW_SURVEY_LANES;
-    for (size_t k = 0; k < v->n_power; k++)
-        for (size_t i = n; i < whole; i++)
+    for (int r = 0; r < ROWS; r++)
+        for (size_t k = 0; k < v->n_power; k++)
+            for (size_t j = 0; j < GROUP; j++)
+                w->row[r][k * STRIDE + first + j] = (float)(1e6 * w->group[r][j][k]);
+}
+
+/* Samples first.. of a chunk. The last group and the lanes are filled up with samples that count as lack of fusion without balling. */
+static mw_status fill_chunk(const survey *v, const mw_sample *sample, size_t n, double speed_m_per_s, size_t *lanes, workspace *w)
+{
+    *lanes = (n + MW_SURVEY_LANES - 1) / MW_SURVEY_LANES * MW_SURVEY_LANES;
+    for (size_t first = 0; first < *lanes; first += GROUP) {
+        for (size_t j = 0; j < GROUP; j++) {
+            const size_t i = first + j;
+            if (i < n) {
+                const mw_status status = pool_sample(v, &sample[i], speed_m_per_s, i, j, w);
+                if (status != MW_OK)
+                    return status;
+                continue;
+            }
+            w->energy_power[i] = 0;
             for (int r = 0; r < ROWS; r++)
-                w->row[r][k * CHUNK + i] = 0;
-    return whole;
+                memset(w->group[r][j], 0, v->n_power * sizeof w->group[r][j][0]);
+        }
+        turn_group(v, first, w);
+    }
+    return MW_OK;
 }
 
 /* ---- counts ---- */
@@ -123,18 +134,20 @@ static size_t pad(const survey *v, size_t n, workspace *w)
 static void count_power(survey *v, size_t speed, size_t k, size_t lanes, workspace *w)
 {
     const mw_grid *g = v->grid;
-    const size_t cell = (k * v->n_speed + speed) * v->n_pairs, at = k * CHUNK;
-    const float power_factor = (float)pow(v->grid->power_W[v->first_power + k], v->exponent);
-    const mw_survey_lanes l = {lanes, w->row[0] + at, w->row[1] + at, w->row[2] + at, w->row[3] + at, w->row[4] + at};
-    for (size_t i = 0; i < lanes; i++)
-        w->row[3][at + i] *= power_factor;
+    const size_t line = k * v->n_speed + speed, cell = line * v->n_pairs, at = k * STRIDE;
+    const double power_W = g->power_W[v->first_power + k], speed_m_per_s = g->speed_m_per_s[v->first_speed + speed];
+    const double weber = v->plan->density_cold_kg_per_m3 * speed_m_per_s * speed_m_per_s * 1e-6 / v->plan->surface_tension_N_per_m / mw_balling_constants()->weber;
+    const mw_survey_lanes l = {lanes, w->row[WIDTH] + at, w->row[DEPTH] + at, w->row[CONDUCTION] + at, w->energy_power,
+                               (float)pow(power_W, v->exponent), (float)weber};
+    mw_survey_widths(&l, w->across);
     for (size_t t = 0; t < g->n_layer; t++) {
         uint32_t balling;
-        mw_survey_count(&l, &v->layer[t], &v->pair[t * g->n_hatch], g->n_hatch, w->scratch, w->nominal, w->keyhole, &balling);
-        v->balling[(k * v->n_speed + speed) * g->n_layer + t] = (uint16_t)(v->balling[(k * v->n_speed + speed) * g->n_layer + t] + balling);
+        mw_survey_count(&l, w->across, &v->layer[t], &v->pair[t * g->n_hatch], g->n_hatch, w->down, w->nominal, w->keyhole, &balling);
+        v->balling[line * g->n_layer + t] = (uint16_t)(v->balling[line * g->n_layer + t] + balling);
         for (size_t h = 0; h < g->n_hatch; h++) {
-            v->nominal[cell + h * g->n_layer + t] = (uint16_t)(v->nominal[cell + h * g->n_layer + t] + w->nominal[h]);
-            v->keyhole[cell + h * g->n_layer + t] = (uint16_t)(v->keyhole[cell + h * g->n_layer + t] + w->keyhole[h]);
+            uint16_t *nominal = &v->nominal[cell + h * g->n_layer + t], *keyhole = &v->keyhole[cell + h * g->n_layer + t];
+            *nominal = (uint16_t)(*nominal + w->nominal[h]);
+            *keyhole = (uint16_t)(*keyhole + w->keyhole[h]);
         }
     }
 }
@@ -144,12 +157,10 @@ static mw_status survey_speed(survey *v, size_t speed, workspace *w)
     const double speed_m_per_s = v->grid->speed_m_per_s[v->first_speed + speed];
     for (size_t first = 0; first < v->n_sample; first += CHUNK) {
         const size_t n = v->n_sample - first < CHUNK ? v->n_sample - first : CHUNK;
-        for (size_t i = 0; i < n; i++) {
-            const mw_status status = fill_sample(v, &v->sample[first + i], speed_m_per_s, i, w);
-            if (status != MW_OK)
-                return status;
-        }
-        const size_t lanes = pad(v, n, w);
+        size_t lanes;
+        const mw_status status = fill_chunk(v, &v->sample[first], n, speed_m_per_s, &lanes, w);
+        if (status != MW_OK)
+            return status;
         for (size_t k = 0; k < v->n_power; k++)
             count_power(v, speed, k, lanes, w);
     }
@@ -170,7 +181,7 @@ static workspace *new_workspace(const survey *v)
     workspace *w = calloc(1, sizeof *w);
     if (w == NULL)
         return NULL;
-    const size_t each = (size_t)CHUNK * (v->grid->n_power < MOST_POWERS ? v->grid->n_power : MOST_POWERS);
+    const size_t each = (size_t)STRIDE * (v->grid->n_power < MOST_POWERS ? v->grid->n_power : MOST_POWERS);
     float *rows = malloc(ROWS * each * sizeof *rows);
     w->row[0] = rows;
     w->nominal = malloc(2 * v->grid->n_hatch * sizeof *w->nominal);
@@ -212,13 +223,13 @@ static mw_status write_block(const survey *v, mw_survey_sink sink, void *to)
     for (size_t k = 0; k < v->n_power; k++)
         for (size_t s = 0; s < v->n_speed; s++)
             for (size_t pair = 0; pair < v->n_pairs; pair++) {
-                const size_t row = k * v->n_speed + s, h = pair / g->n_layer, t = pair % g->n_layer;
+                const size_t line = k * v->n_speed + s, h = pair / g->n_layer, t = pair % g->n_layer;
                 const size_t number = ((v->first_power + k) * g->n_speed + v->first_speed + s) * v->n_pairs + pair;
                 if (number < g->first_cell || number >= g->first_cell + g->n_cell)
                     continue;
                 const mw_survey_cell cell = {g->power_W[v->first_power + k], g->speed_m_per_s[v->first_speed + s], g->hatch_m[h], g->layer_m[t],
-                                             (uint32_t)v->n_sample, v->nominal[row * v->n_pairs + pair], v->keyhole[row * v->n_pairs + pair],
-                                             v->balling[row * g->n_layer + t]};
+                                             (uint32_t)v->n_sample, v->nominal[line * v->n_pairs + pair], v->keyhole[line * v->n_pairs + pair],
+                                             v->balling[line * g->n_layer + t]};
                 const mw_status status = sink(to, &cell);
                 if (status != MW_OK)
                     return status;

@@ -4,30 +4,41 @@
 
 #include "model/wide.h"
 
-/* across[i] = 1/W^2, down[i] = (t/D)^2 over the even-odds overlap index, D under this layer. */
-MW_WIDE static void shapes(const mw_survey_lanes *l, const mw_survey_layer *layer, float *restrict across, float *restrict down)
+/* across[i] = 1/W^2, 0 without a pool. */
+MW_WIDE static void widths(const mw_survey_lanes *l, float *restrict across)
 {
-    const float *restrict width = l->width, *restrict depth = l->depth;
-    const float t = layer->layer_um, half = layer->half_layer_um, scale = layer->scale;
+    const float *restrict width = l->width;
     for (size_t i = 0; i < l->n; i++) {
-        const float w = width[i] > 1e-3f ? width[i] : 1e-3f, d = depth[i] > 1e-3f ? depth[i] : 1e-3f;
-        const float under = t * (d + half) / (d * d); /* t/D with D = d/(1 + half/d) */
-        across[i] = 1 / (w * w);
-        down[i] = under * under * scale;
+        const float w = width[i], wide = 1 / (w * w);
+        across[i] = w > 0 ? wide : 0;
     }
 }
 
-MW_WIDE static void count_pair(const mw_survey_lanes *l, const mw_survey_pair *p, float most, const float *restrict across, const float *restrict down,
-                               uint32_t *nominal, uint32_t *keyhole)
+/* down[i] = (t/D)^2 over the even-odds overlap index, D under this layer; without a pool the index is `most`. */
+MW_WIDE static void depths(const mw_survey_lanes *l, const mw_survey_layer *layer, float *restrict down)
 {
-    const float *restrict energy = l->energy, *restrict energy_power = l->energy_power;
-    const float h2 = p->hatch2, area = p->over_area, power = p->over_power;
+    const float *restrict depth = l->depth;
+    const float t = layer->layer_um, half = layer->half_layer_um, scale = layer->scale, most = layer->most;
+    for (size_t i = 0; i < l->n; i++) {
+        const float d = depth[i], under = t * (d + half) / (d * d); /* t/D with D = d/(1 + half/d) */
+        const float deep = under * under * scale;
+        down[i] = deep < most ? deep : most; /* NaN and infinity: no pool */
+    }
+}
+
+/* With both indices over their even-odds values: nominal where neither passes 1, keyhole where the rival (the energy index to the exponent at
+ * which its odds compare with the overlap's) passes both 1 and the overlap. */
+MW_WIDE static void count_pair(const mw_survey_lanes *l, const mw_survey_pair *p, const float *restrict across, const float *restrict down, uint32_t *nominal,
+                               uint32_t *keyhole)
+{
+    const float *restrict energy_power = l->energy_power;
+    const float h2 = p->hatch2, power = p->over_power * l->power_power;
     int32_t n_nominal = 0, n_keyhole = 0;
     for (size_t i = 0; i < l->n; i++) {
-        const float sum = across[i] * h2 + down[i], overlap = sum < most ? sum : most;
-        const float ratio = energy[i] * area, rival = energy_power[i] * power;
-        n_nominal += (overlap <= 1.0f) & (ratio <= 1.0f);
-        n_keyhole += (ratio > 1.0f) & (rival > overlap);
+        const float overlap = across[i] * h2 + down[i], rival = energy_power[i] * power;
+        const float larger = overlap > rival ? overlap : rival, bar = 1.0f > overlap ? 1.0f : overlap;
+        n_nominal += larger <= 1.0f;
+        n_keyhole += rival > bar;
     }
     *nominal = (uint32_t)n_nominal;
     *keyhole = (uint32_t)n_keyhole;
@@ -35,19 +46,24 @@ MW_WIDE static void count_pair(const mw_survey_lanes *l, const mw_survey_pair *p
 
 MW_WIDE static uint32_t count_balling(const mw_survey_lanes *l, float factor)
 {
-    const float *restrict weber = l->weber;
+    const float *restrict conduction = l->conduction;
+    const float index = l->weber * factor; /* per um */
     int32_t n = 0;
     for (size_t i = 0; i < l->n; i++)
-        n += weber[i] * factor > 1.0f;
+        n += conduction[i] * index > 1.0f;
     return (uint32_t)n;
 }
 
-void mw_survey_count(const mw_survey_lanes *lanes, const mw_survey_layer *layer, const mw_survey_pair *pair, size_t n_pair, float *scratch, uint32_t *nominal,
-                     uint32_t *keyhole, uint32_t *balling)
+void mw_survey_widths(const mw_survey_lanes *lanes, float *across)
 {
-    float *across = scratch, *down = scratch + lanes->n;
-    shapes(lanes, layer, across, down);
+    widths(lanes, across);
+}
+
+void mw_survey_count(const mw_survey_lanes *lanes, const float *across, const mw_survey_layer *layer, const mw_survey_pair *pair, size_t n_pair, float *down,
+                     uint32_t *nominal, uint32_t *keyhole, uint32_t *balling)
+{
+    depths(lanes, layer, down);
     for (size_t p = 0; p < n_pair; p++)
-        count_pair(lanes, &pair[p], layer->most, across, down, &nominal[p], &keyhole[p]);
+        count_pair(lanes, &pair[p], across, down, &nominal[p], &keyhole[p]);
     *balling = count_balling(lanes, layer->balling_factor);
 }

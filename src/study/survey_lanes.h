@@ -7,13 +7,14 @@
 #include <stdint.h>
 
 /* Per sample, n of them (a multiple of MW_SURVEY_LANES; the surplus is padded so that it counts nowhere as nominal, keyhole or balling):
- *   width, depth    um, depth on bare plate; 0 without a pool
- *   energy          melt energy ratio times hatch times layer in um2, over the even-odds value
- *   energy_power    the same to the power energy_slope/overlap_slope: where it exceeds the overlap index over its even-odds value, keyhole wins
- *   weber           balling index but for the layer's factor */
+ *   width, depth, conduction   um: width, depth on bare plate, width without a cavity; 0 without a pool
+ *   energy_power    melt energy ratio per watt times hatch times layer in um2, over the even-odds value, to the power energy_slope/overlap_slope: with
+ *                   that exponent its odds compare with those of the overlap index over its own even-odds value */
 typedef struct mw_survey_lanes {
     size_t n;
-    const float *width, *depth, *energy, *energy_power, *weber;
+    const float *width, *depth, *conduction, *energy_power;
+    float power_power; /* laser power in W to that exponent */
+    float weber;              /* balling index per um of conduction width, but for the layer's factor */
 } mw_survey_lanes;
 
 enum { MW_SURVEY_LANES = 64 };
@@ -21,8 +22,7 @@ enum { MW_SURVEY_LANES = 64 };
 /* One hatch and layer as the lanes see it. */
 typedef struct mw_survey_pair {
     float hatch2;       /* um2, over the even-odds overlap index */
-    float over_area;    /* 1/(h t), um-2 */
-    float over_power;   /* the same to the power energy_slope/overlap_slope */
+    float over_power;   /* 1/(h t) in um-2, to the power energy_slope/overlap_slope */
 } mw_survey_pair;
 
 typedef struct mw_survey_layer {
@@ -32,8 +32,10 @@ typedef struct mw_survey_layer {
     float balling_factor;
 } mw_survey_layer;
 
-/* nominal[p] and keyhole[p] for n_pair hatches of one layer are set to counts; *balling too. */
-void mw_survey_count(const mw_survey_lanes *lanes, const mw_survey_layer *layer, const mw_survey_pair *pair, size_t n_pair, float *scratch, uint32_t *nominal,
-                     uint32_t *keyhole, uint32_t *balling);
+/* What the layers share: 1/W^2 of each lane. */
+void mw_survey_widths(const mw_survey_lanes *lanes, float *across);
+/* nominal[p] and keyhole[p] for n_pair hatches of one layer are set to counts; *balling too. `down` is scratch for n lanes. */
+void mw_survey_count(const mw_survey_lanes *lanes, const float *across, const mw_survey_layer *layer, const mw_survey_pair *pair, size_t n_pair, float *down,
+                     uint32_t *nominal, uint32_t *keyhole, uint32_t *balling);
 
 #endif
