@@ -33,6 +33,7 @@ CLI_SRC  := $(sort $(wildcard src/cli/*.c))
 TEST_SRC := $(sort $(wildcard tests/unit/test_*.c))
 LIB_OBJ  := $(LIB_SRC:%.c=$(B)/%.o)
 CLI_OBJ  := $(CLI_SRC:%.c=$(B)/%.o)
+BENCH_OBJ := $(patsubst %.c,$(B)/%.o,$(sort $(wildcard tests/bench/*.c)))
 VAL_OBJ  := $(patsubst %.c,$(B)/%.o,$(sort $(wildcard tests/validation/*.c)))
 TESTS    := $(TEST_SRC:%.c=$(B)/%)
 HEADERS  := $(sort $(wildcard include/meltwright/*.h))
@@ -40,7 +41,7 @@ PROGRAM  := $(B)/meltwright
 
 .DELETE_ON_ERROR:
 .SECONDARY:
-.PHONY: all demo check test plots validate coverage install uninstall clean help setup FORCE
+.PHONY: all demo check test plots validate bench coverage install uninstall clean help setup FORCE
 
 all: $(PROGRAM) $(B)/libmeltwright.so $(B)/meltwright.pc ## build library and program (set-up must have run once)
 
@@ -71,6 +72,10 @@ validate: setup ## accuracy against published measurements; draws plots/parity.p
 	@$(MAKE) --no-print-directory $(B)/validate
 	@$(B)/validate plots/parity.png
 
+bench: setup ## speed against the simple way, the machine's limits, other sizes (a minute or two)
+	@$(MAKE) --no-print-directory $(PROGRAM) $(B)/bench
+	@$(B)/bench $(PROGRAM)
+
 coverage: setup ## branch coverage of each storey (gcov)
 	@$(MAKE) --no-print-directory COV=1 test
 	@sh tests/coverage.sh build/cov
@@ -95,6 +100,10 @@ $(B)/tests/unit/%: $(B)/tests/unit/%.o $(B)/libmeltwright.a
 $(B)/validate: $(VAL_OBJ) $(B)/libmeltwright.a
 	$(if $(V),,@echo '  link $@')
 	$(Q)$(CC) $(OMPF) $(INST) $(LDFLAGS) -o $@ $(VAL_OBJ) $(B)/libmeltwright.a $(LIBS)
+
+$(B)/bench: $(BENCH_OBJ) $(B)/libmeltwright.a
+	$(if $(V),,@echo '  link $@')
+	$(Q)$(CC) $(OMPF) $(INST) $(LDFLAGS) -o $@ $(BENCH_OBJ) $(B)/libmeltwright.a $(LIBS)
 
 $(B)/src/present/%.o: ALLC += $(PLPLOT_C)
 
