@@ -56,16 +56,17 @@ void bench_growth(bench *b)
     bench_stop_on(mw_plan_make(alloy, MW_MODEL_DEFAULT, NULL, 293.15, &plan, &err), &err);
     (void)b;
     /* Small work is repeated so that each turn lasts long enough. */
-    const sweep_work small = {&plan, 32, 0, 4, false}, middle = {&plan, 64, 0, 1, false}, large = {&plan, 128, 0, 1, false};
+    const sweep_work small = {&plan, 32, 0, 4, false}, middle = {&plan, 64, 0, 1, false},
+                     large = {&plan, 128, 0, 1, false};
     bench_heading("Growth of a sweep with the default model, one pool", "small", "large", "times");
     compare("32 x 32 against 64 x 64, all cores", small, middle, "1 = time grows as the grid");
     compare("32 x 32 against 128 x 128, all cores", small, large, NULL);
-    bench_heading("Threads, one pool of 64 x 64", "2 threads", "1 thread", "times");
-    sweep_work one = middle, two = middle;
+    sweep_work one = middle, two = middle, one_margins = {&plan, 32, 1, 1, true},
+               two_margins = {&plan, 32, 2, 1, true};
     one.threads = 1;
     two.threads = 2;
-    compare("without margins", two, one, "2 = nothing lost");
-    one.margins = two.margins = true;
-    compare("with margins", two, one, NULL);
+    bench_heading("Threads in a sweep, one pool", "2 threads", "1 thread", "times");
+    compare("64 x 64", two, one, "2 = nothing lost");
+    compare("32 x 32 with margins", two_margins, one_margins, NULL);
     mw_alloy_free(alloy);
 }

@@ -30,11 +30,12 @@ MW_WIDE void kernel_exp_vector(kernel_slice *s)
     s->out = y[n - 1];
 }
 
-/* exp(x) = 2^k exp(r), |r| <= ln 2 / 2; Taylor to r^13 leaves less than (0.347)^14 / 14! = 4e-18. k comes from adding 1.5 * 2^52, in whose
- * last digits it then stands; ln 2 is split so that k times its first part is exact. */
+/* exp(x) = 2^k exp(r), |r| <= ln 2 / 2; Taylor to r^13 leaves less than (0.347)^14 / 14! = 4e-18. k comes from
+ * adding 1.5 * 2^52, in whose last digits it then stands; ln 2 is split so that k times its first part is exact. */
 MW_WIDE void kernel_exp_series(kernel_slice *s)
 {
-    static const double to_integer = 6755399441055744.0, ln2_high = 0x1.62e42fee00000p-1, ln2_low = 0x1.a39ef35793c76p-33;
+    static const double to_integer = 6755399441055744.0, ln2_high = 0x1.62e42fee00000p-1,
+                        ln2_low = 0x1.a39ef35793c76p-33;
     const double *x = s->x;
     double *y = s->y;
     const size_t n = s->n;

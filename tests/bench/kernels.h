@@ -17,11 +17,11 @@ typedef struct kernel_slice {
 
 typedef void kernel(kernel_slice *s);
 
-kernel kernel_exp_scalar;  /* y = exp(x), one call of libm an element */
-kernel kernel_exp_vector;  /* the same with the vector form of libm where the library has one, as the model's loops use it */
-kernel kernel_exp_series;  /* the same by a polynomial in a plain loop */
-kernel kernel_compare;     /* how many f lie below a limit that changes from call to call */
-kernel kernel_read;        /* sum of x */
-kernel kernel_axpy;        /* y += a x */
+kernel kernel_exp_scalar; /* y = exp(x), one call of libm an element */
+kernel kernel_exp_vector; /* the same with the vector form of libm, where the compiler lets the model have it */
+kernel kernel_exp_series; /* the same by a polynomial in a plain loop */
+kernel kernel_compare;    /* how many f lie below a limit that changes from call to call */
+kernel kernel_read;       /* sum of x */
+kernel kernel_axpy;       /* y += a x */
 
 #endif

@@ -1,5 +1,5 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
- * Prints how fast meltwright is beside the simple way, the machine's limits, and itself on other sizes, all in one run on one machine.
+ * Prints how fast meltwright is beside the simple way, the machine's limits, and itself on other sizes, in one run.
  * usage: bench PROGRAM, from the repository root. Exit 1: something timed does not give the right answer. */
 #include "bench.h"
 
@@ -42,7 +42,8 @@ void bench_line(const char *what, double ours_s, double other_s, double ratio, c
     bench_time(other, other_s);
     if (ratio > 0)
         (void)snprintf(times, sizeof times, ratio >= 1000 ? "%.0f" : "%.3g", ratio);
-    (void)printf("  %-52s %12s %12s %9s%s%s\n", what, ours, other, times, note != NULL ? "  " : "", note != NULL ? note : "");
+    const bool more = note != NULL && note[0] != '\0';
+    (void)printf("  %-52s %12s %12s %9s%s%s\n", what, ours, other, times, more ? "  " : "", more ? note : "");
     (void)fflush(stdout);
 }
 
@@ -57,8 +58,10 @@ int main(int argc, char **argv)
     }
     bench b = {.program = argv[1]};
     (void)gsl_set_error_handler_off();
-    (void)printf("meltwright %s: speed. Medians; what is compared runs in turns, and the ratio is the median of the turns.\n"
-                 "Times belong to this machine and this minute; ratios travel better.\n", mw_version());
+    (void)printf(
+        "meltwright %s: speed. Medians; what is compared runs in turns, and the ratio is the median of the turns.\n"
+        "Times belong to this machine and this minute; ratios travel better.\n",
+        mw_version());
     const double start = bench_now();
     for (size_t i = 0; i < sizeof sections / sizeof *sections; i++)
         sections[i](&b);

@@ -1,5 +1,6 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
- * Times that can be compared on a machine whose clock rate drifts: what is compared runs in turns, and the ratio of each turn counts. */
+ * Times that can be compared on a machine whose clock rate drifts: what is compared runs in turns, and
+ * the ratio of each turn counts. */
 #ifndef MELTWRIGHT_BENCH_MEASURE_H
 #define MELTWRIGHT_BENCH_MEASURE_H
 

@@ -1,9 +1,11 @@
 # SPDX-License-Identifier: GPL-3.0-or-later
-"""The pool of a moving Gaussian source (Eagar and Tsai 1983) as a careful user would write it with SciPy: quad for the integral, brentq for
-the isotherm, a bounded minimiser over x inside it. Lengths in sigma.  usage: pool_scipy.py time|root-time < settings
+"""The pool of a moving Gaussian source (Eagar and Tsai 1983) as a careful user would write it with SciPy: quad for
+the integral, brentq for the isotherm, a bounded minimiser over x inside it. Lengths in sigma.
 
-Reads one pool a line: absorbed power W, speed m/s, sigma m, conductivity W/mK, volumetric heat J/m3K, ambient K, isotherm K.
-Prints width, depth and length in m, one pool a line, and then the seconds a pool took, without start-up."""
+usage: pool_scipy.py time|root-time < settings
+
+Reads one pool a line: absorbed power W, speed m/s, sigma m, conductivity W/mK, volumetric heat J/m3K, ambient K,
+isotherm K. Prints width, depth and length in m, one pool a line, then the seconds a pool took, start-up left out."""
 import math
 import sys
 import time

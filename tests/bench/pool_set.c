@@ -35,7 +35,8 @@ void pool_set_load(pool_set *out)
             continue;
         const size_t i = out->n++;
         out->source[i] = (mw_source){cell(r, "P_W") * cell(r, "A"), cell(r, "v_m_s"), cell(r, "d4sigma_m") / 4};
-        out->medium[i] = (mw_medium){cell(r, "k_W_mK"), cell(r, "rho_kg_m3") * cell(r, "cp_J_kgK"), cell(r, "T0_K"), cell(r, "Tm_K")};
+        out->medium[i] = (mw_medium){cell(r, "k_W_mK"), cell(r, "rho_kg_m3") * cell(r, "cp_J_kgK"), cell(r, "T0_K"),
+                                     cell(r, "Tm_K")};
         out->width_m[i] = cell(r, "width_m");
         out->depth_m[i] = cell(r, "depth_m");
         out->length_m[i] = cell(r, "length_m");
@@ -55,7 +56,8 @@ void pool_set_drop(pool_set *set, size_t i)
 
 double pool_set_error(const pool_set *set, size_t i, double width_m, double depth_m, double length_m)
 {
-    const double error[3] = {width_m / set->width_m[i] - 1, depth_m / set->depth_m[i] - 1, length_m / set->length_m[i] - 1};
+    const double error[3] = {width_m / set->width_m[i] - 1, depth_m / set->depth_m[i] - 1,
+                             length_m / set->length_m[i] - 1};
     double worst = 0;
     for (int q = 0; q < 3; q++)
         worst = isnan(error[q]) ? INFINITY : fmax(worst, fabs(error[q]));

@@ -20,7 +20,7 @@ typedef struct pool_set {
 void pool_set_load(pool_set *out);
 void pool_set_drop(pool_set *set, size_t i);
 
-/* Largest relative difference from the reference in width, depth and length; infinite where an answer is no number. */
+/* Largest relative difference from the reference in width, depth and length; infinite where one is no number. */
 double pool_set_error(const pool_set *set, size_t i, double width_m, double depth_m, double length_m);
 
 #endif

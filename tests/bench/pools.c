@@ -1,5 +1,5 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
- * The exact pool against the same pool by general-purpose quadrature and search, in C with GSL and in Python with SciPy. */
+ * The exact pool against the same pool by general-purpose quadrature and search: C with GSL, Python with SciPy. */
 #include "bench.h"
 
 #include <math.h>
@@ -84,7 +84,8 @@ static size_t drop_what_is_wrong(pool_set *set, gsl_integration_workspace *ws)
     size_t dropped = 0;
     for (size_t i = set->n; i-- > 0;) {
         simple_pool p;
-        const bool good = simple_pool_compute(&set->source[i], &set->medium[i], SIMPLE_BISECTION, SIMPLE_ROOT_TIME, ws, &p);
+        const bool good =
+            simple_pool_compute(&set->source[i], &set->medium[i], SIMPLE_BISECTION, SIMPLE_ROOT_TIME, ws, &p);
         if (!good || !(pool_set_error(set, i, p.width_m, p.depth_m, p.length_m) <= right)) {
             pool_set_drop(set, i);
             dropped++;
@@ -176,7 +177,9 @@ void bench_pools(bench *b)
     bench_heading("Exact pool of a Gaussian source (width, depth, length)", "meltwright", "other", "times");
     check_ours(b, &set);
     const size_t dropped = drop_what_is_wrong(&set, ws);
-    (void)printf("  timed on the %zu that golden section gets right; it takes the narrower of two widest places on the rest\n", set.n);
+    (void)printf("  timed on the %zu that golden section gets right (where a pool has two widest places it may find "
+                 "the lesser)\n",
+                 set.n);
     b->wrong += 10 * dropped > all;
     against_gsl(b, &set, ws);
     against_scipy(b, &set);

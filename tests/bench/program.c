@@ -11,7 +11,7 @@
 #include <sys/wait.h>
 #include <unistd.h>
 
-enum { FEW_ROWS = 10000, MANY_ROWS = 100000, JUDGED_ROWS = 500, MOST_ARGUMENTS = 32 };
+enum { FEW_ROWS = 10000, MANY_ROWS = 100000, JUDGED_ROWS = 300, MOST_ARGUMENTS = 32 };
 
 extern char **environ;
 
@@ -72,7 +72,8 @@ typedef struct folder {
 
 static bool make_folder(folder *f)
 {
-    static const char *const name[FILE_COUNT] = {"few.csv", "many.csv", "judged.csv", "out.csv", "out.csv.json", "map.svg"};
+    static const char *const name[FILE_COUNT] = {"few.csv", "many.csv",     "judged.csv",
+                                                 "out.csv", "out.csv.json", "map.svg"};
     (void)snprintf(f->path, sizeof f->path, "/tmp/meltwright-bench-XXXXXX");
     if (mkdtemp(f->path) == NULL)
         return false;
@@ -102,16 +103,19 @@ static bench_pair compare(bench *b, const char *what, process small, process lar
 
 static process table(const char *program, const char *from, const char *to, double rows)
 {
-    return (process){{program, "track", "--from", from, "--alloy", "316L", "--d4sigma", "80", "-q", "--force", "-o", to}, rows};
+    return (process){
+        {program, "track", "--from", from, "--alloy", "316L", "--d4sigma", "80", "-q", "--force", "-o", to}, rows};
 }
 
 static void compare_all(bench *b, const folder *f)
 {
     const process nothing = {{"true"}, 1};
-    const process track = {{b->program, "track", "--alloy", "316L", "--d4sigma", "80", "--power", "200", "--speed", "800", "--hatch", "110",
-                            "--layer", "40"}, 1};
-    const process summary = {{b->program, "map", "--alloy", "316L", "--d4sigma", "80", "--power", "60:400:129", "--speed", "200:2000:129",
-                              "--hatch", "110", "--layer", "40", "-q"}, 1};
+    const process track = {{b->program, "track", "--alloy", "316L", "--d4sigma", "80", "--power", "200", "--speed",
+                            "800", "--hatch", "110", "--layer", "40"},
+                           1};
+    const process summary = {{b->program, "map", "--alloy", "316L", "--d4sigma", "80", "--power", "60:400:129",
+                              "--speed", "200:2000:129", "--hatch", "110", "--layer", "40", "-q"},
+                             1};
     process picture = summary;
     size_t n = 0;
     while (picture.argument[n] != NULL)
@@ -122,10 +126,10 @@ static void compare_all(bench *b, const folder *f)
     (void)compare(b, "a process that does nothing against track, one setting", nothing, track, 25, NULL);
     (void)compare(b, "map 129 x 129, summary against the same with SVG", summary, picture, 3, NULL);
     const process few = table(b->program, f->file[FEW], f->file[TABLE], FEW_ROWS);
-    (void)compare(b, "track --from, a row of 10 000 against one of 100 000", few, table(b->program, f->file[MANY], f->file[TABLE], MANY_ROWS), 2,
-                  "rows/s");
-    (void)compare(b, "track --from, a single track against all margins", few, table(b->program, f->file[JUDGED], f->file[TABLE], JUDGED_ROWS), 3,
-                  "rows/s");
+    (void)compare(b, "track --from, a row of 10 000 against one of 100 000", few,
+                  table(b->program, f->file[MANY], f->file[TABLE], MANY_ROWS), 2, "rows/s");
+    (void)compare(b, "track --from, a single track against all margins", few,
+                  table(b->program, f->file[JUDGED], f->file[TABLE], JUDGED_ROWS), 3, "rows/s");
 }
 
 void bench_program(bench *b)

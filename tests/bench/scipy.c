@@ -29,9 +29,9 @@ static bool write_settings(char *path, const pool_set *set)
     if (f == NULL)
         return false;
     for (size_t i = 0; i < set->n; i++)
-        (void)fprintf(f, "%.17g %.17g %.17g %.17g %.17g %.17g %.17g\n", set->source[i].absorbed_W, set->source[i].speed_m_per_s,
-                      set->source[i].sigma_m, set->medium[i].conductivity_W_per_mK, set->medium[i].volumetric_heat_J_per_m3K,
-                      set->medium[i].ambient_K, set->medium[i].isotherm_K);
+        (void)fprintf(f, "%.17g %.17g %.17g %.17g %.17g %.17g %.17g\n", set->source[i].absorbed_W,
+                      set->source[i].speed_m_per_s, set->source[i].sigma_m, set->medium[i].conductivity_W_per_mK,
+                      set->medium[i].volumetric_heat_J_per_m3K, set->medium[i].ambient_K, set->medium[i].isotherm_K);
     return fclose(f) == 0;
 }
 
@@ -57,7 +57,8 @@ double scipy_pools(const scipy *s, const char *clock, const pool_set *set, doubl
     *worst = INFINITY;
     if (write_settings(path, set)) {
         /* quad warns of round-off where its value is good */
-        (void)snprintf(command, sizeof command, "%s -W ignore tests/bench/pool_scipy.py %s <%s", s->python, clock, path);
+        (void)snprintf(command, sizeof command, "%s -W ignore tests/bench/pool_scipy.py %s <%s", s->python, clock,
+                       path);
         FILE *f = popen(command, "r");
         if (f != NULL) {
             seconds = read_pools(f, set, worst);

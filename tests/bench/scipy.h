@@ -13,7 +13,7 @@ typedef struct scipy {
 
 bool scipy_find(scipy *out);
 
-/* Seconds a pool by the script's own clock, start-up left out; NaN when it failed. *worst is the error over the set. */
+/* Seconds a pool by the script's own clock, start-up left out; NaN when it failed. *worst: error over the set. */
 double scipy_pools(const scipy *s, const char *clock, const pool_set *set, double *worst);
 
 #endif

@@ -46,7 +46,7 @@ static double rise(field *f, double x, double y, double z)
     point at = {x, y, z, f->peclet};
     gsl_function g = {f->clock == SIMPLE_TIME ? by_time : by_root_time, &at};
     double value, error;
-    /* The code is no help: it also complains of round-off where the value is good. The pools are compared with others instead. */
+    /* The code is no help: it also complains of round-off where the value is good. The pools are compared instead. */
     (void)gsl_integration_qagiu(&g, 0, 0, SIMPLE_QUADRATURE, SIMPLE_INTERVALS, f->ws, &value, &error);
     f->integrals++;
     return f->strength * value;
@@ -54,7 +54,7 @@ static double rise(field *f, double x, double y, double z)
 
 /* ---- golden section and bisection ---- */
 
-/* A direction in which the edge of the pool is looked for: along x from the peak, or across or down from (x, 0, 0). */
+/* Where the edge of the pool is looked for: along x from the peak, or across or down from (x, 0, 0). */
 typedef enum ray { AHEAD, BEHIND, ACROSS, DOWN } ray;
 
 static double rise_on(field *f, ray way, double x, double r)
@@ -158,7 +158,8 @@ static bool find_start(search *s, double front, double back, double least_end, d
     return *least < least_end;
 }
 
-/* Excess of the hottest place on the line at distance r from the track. Far out the line is hottest at an end: then it is all solid. */
+/* Excess of the hottest place on the line at distance r from the track. Far out the line is hottest at an end: then
+ * it is all solid. */
 static double excess_of_line(double r, void *v)
 {
     search *s = v;
@@ -232,8 +233,10 @@ static void by_brent(field *f, double *half, double *depth)
 bool simple_pool_compute(const mw_source *source, const mw_medium *medium, simple_way way, simple_clock clock,
                          gsl_integration_workspace *ws, simple_pool *out)
 {
-    const double k = medium->conductivity_W_per_mK, alpha = k / medium->volumetric_heat_J_per_m3K, sigma = source->sigma_m;
-    field f = {.strength = source->absorbed_W / (M_SQRT2 * pow(M_PI, 1.5) * k * sigma * (medium->isotherm_K - medium->ambient_K)),
+    const double k = medium->conductivity_W_per_mK, alpha = k / medium->volumetric_heat_J_per_m3K,
+                 sigma = source->sigma_m;
+    field f = {.strength = source->absorbed_W /
+                           (M_SQRT2 * pow(M_PI, 1.5) * k * sigma * (medium->isotherm_K - medium->ambient_K)),
                .peclet = source->speed_m_per_s * sigma / (2 * alpha),
                .clock = clock,
                .ws = ws};

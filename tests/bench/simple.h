@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
- * The pool of a moving Gaussian source as a careful user would write it in an afternoon with GSL: the integral by adaptive quadrature,
- * sizes by general-purpose search. What meltwright is timed against; it shares no code with it. */
+ * The pool of a moving Gaussian source as a careful user would write it in an afternoon with GSL: the integral by
+ * adaptive quadrature, sizes by general-purpose search. meltwright is timed against it and shares no code with it. */
 #ifndef MELTWRIGHT_BENCH_SIMPLE_H
 #define MELTWRIGHT_BENCH_SIMPLE_H
 
@@ -20,7 +20,8 @@ typedef enum simple_clock {
     SIMPLE_ROOT_TIME /* w, 2 alpha t = sigma^2 w^2: no root at t = 0, so fewer points */
 } simple_clock;
 
-/* What is asked of the quadrature and of the searches, all relative. Searches for a place stop earlier: an extreme is flat there. */
+/* What is asked of the quadrature and of the searches, all relative. Searches for a place stop earlier: an extreme is
+ * flat there. */
 #define SIMPLE_QUADRATURE 1e-9
 #define SIMPLE_SIZE 1e-8
 #define SIMPLE_PLACE 1e-4
