@@ -162,7 +162,11 @@ int run_sweep(const arguments *args)
         if (g->n_cell == 0)
             status = mw_fail(&err, MW_BAD_USAGE, NULL, 0, "--shard %s: the table has fewer rows than that", args->value[OPT_SHARD]);
     }
-    if (status == MW_OK)
+    if (status == MW_OK && given(args, OPT_SEED) && !given(args, OPT_SAMPLES))
+        status = mw_fail(&err, MW_BAD_USAGE, NULL, 0, "--seed goes with --samples");
+    if (status == MW_OK && given(args, OPT_SAMPLES))
+        status = write_survey(args, &plan, &axes.grid, threads, format, &part, &err);
+    else if (status == MW_OK)
         status = write_sweep(args, &plan, &axes.grid, threads, format, &part, &err);
     mw_alloy_free(alloy);
     free_grid(&axes);

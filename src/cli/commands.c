@@ -29,12 +29,17 @@ static const char *const track_example[] = {
 
 static const char *const sweep_about[] = {
     "Each of power, speed, hatch and layer is one value, a list, or a range START:STOP:COUNT. Rows: power slowest, layer fastest.\n"
-    "Pools are computed once a power and speed, so hatch and layer cost almost nothing. The table is written as it is computed.",
+    "Pools are computed once a power and speed, so hatch and layer cost almost nothing. The table is written as it is computed.\n"
+    "With --samples coupling, onset, conductivity, heat, solidus, boiling and beam are drawn from their standard uncertainties (the card's, and\n"
+    "--beam-uncertainty), and the table holds the share of samples with each verdict: doubt in the inputs, beside the verdict's own odds.",
     NULL};
 static const char *const sweep_example[] = {
     "meltwright sweep --alloy 316L --d4sigma 80 --power 150:300:4 --speed 600:1200:4 --hatch 90,110 --layer 30,40 --format text",
     "meltwright sweep --alloy Ti-6Al-4V --d4sigma 100 --power 100:300:21 --speed 0.4:1.6:25m/s --hatch 100 --layer 30 -o window.csv",
-    "meltwright sweep --alloy 625 --diameter-1e2 0.1mm --power 195 --speed 400,800,1200 --format csv", NULL};
+    "meltwright sweep --alloy 625 --diameter-1e2 0.1mm --power 195 --speed 400,800,1200 --format csv",
+    "meltwright sweep --alloy 316L --d4sigma 80 --power 100:400:31 --speed 200:2000:37 --hatch 80,110 --layer 30,40 --samples 500 --beam-uncertainty 10 "
+    "-o doubt.csv",
+    NULL};
 
 static const char *const map_about[] = {
     "Draws the verdict over power and speed, one panel a hatch and layer, as SVG, PNG or PDF by the ending of -o, and prints what share of\n"

@@ -13,4 +13,7 @@ typedef struct grid_axes {
 mw_status read_grid(const arguments *args, grid_axes *axes, mw_error *err);
 void free_grid(grid_axes *axes);
 
+/* The survey of a grid: sweep --samples N --seed S. */
+mw_status write_survey(const arguments *args, const mw_plan *plan, const mw_grid *grid, int threads, output_format format, const shard *part, mw_error *err);
+
 #endif

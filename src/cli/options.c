@@ -42,7 +42,7 @@ static mw_status unknown_option(const command_entry *of, const char *name, mw_er
         if (strcmp(table[i].name, name) == 0)
             return mw_fail(err, MW_BAD_USAGE, NULL, 0, "--%s is no option of '%s'", name, of->name);
     /* Names that other versions of the commands take: a near miss would only mislead. */
-    static const char *const elsewhere[] = {"machine", "lot", "fit", "samples", "seed"};
+    static const char *const elsewhere[] = {"machine", "lot", "fit"};
     for (size_t i = 0; i < sizeof elsewhere / sizeof *elsewhere; i++)
         if (strcmp(elsewhere[i], name) == 0)
             return mw_fail(err, MW_BAD_USAGE, NULL, 0, "--%s is not in this version", name);

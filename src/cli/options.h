@@ -33,6 +33,8 @@ enum { ON_CARD = 1, ON_TRACK = 2, ON_SWEEP = 4, ON_MAP = 8, ON_GRIDS = ON_SWEEP 
     X(FROM, "from", 0, true, ON_TRACK | ON_MAP, "FILE.csv", NULL, "settings to evaluate (track) or to mark (map); - is standard input")    \
     X(CONTOURS, "contours", 0, true, ON_MAP, "LIST", NULL, "lines of width, depth, build-rate on the map, e.g. width,depth")               \
     X(ENERGY_LINES, "energy-lines", 0, true, ON_MAP, "LIST", NULL, "lines of one volumetric energy density, J/mm3, or auto")               \
+    X(SAMPLES, "samples", 0, true, ON_SWEEP, "N", NULL, "draw the uncertain inputs N times and count the verdicts of each cell")            \
+    X(SEED, "seed", 0, true, ON_SWEEP, "N", "1", "with --samples: another set of draws")                                                    \
     X(SHARD, "shard", 0, true, ON_TRACK | ON_SWEEP, "I/N", NULL, "only the I-th of N parts of the table; parts in order make the whole")   \
     X(FORMAT, "format", 0, true, ON_ALL, "WORD", NULL, "text, csv or json")                                                                \
     X(OUTPUT, "output", 'o', true, ON_ALL, "FILE", NULL, "write here instead of standard output; map: .svg, .png or .pdf")                 \

@@ -29,4 +29,5 @@ done
 for s in 0/3 4/3 1.5/3 x/3 3 1/0 -1/3; do refuse "shard $s" 3 'is not I/N' -- sweep $S --shard $s; done
 refuse 'more parts than rows' 2 'fewer rows than that' -- sweep $S --shard 49/49
 refuse 'parts of json' 2 'parts of other formats do not join' -- sweep $S --shard 1/2 --format json
-refuse 'an option of another version' 2 'seed is not in this version' -- sweep $S --seed 1
+refuse 'an option of another version' 2 'lot is not in this version' -- sweep $S --lot a.json
+refuse 'a seed without samples' 2 'seed goes with --samples' -- sweep $S --seed 1
