@@ -12,6 +12,7 @@ typedef struct bench {
 } bench;
 
 void bench_pools(bench *b);
+void bench_tables(bench *b);
 void bench_machine(bench *b);
 void bench_growth(bench *b);
 void bench_program(bench *b);

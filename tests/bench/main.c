@@ -48,7 +48,7 @@ void bench_line(const char *what, double ours_s, double other_s, double ratio, c
 }
 
 /* A new comparison is one more function here. */
-static void (*const sections[])(bench *) = {bench_pools, bench_machine, bench_growth, bench_program};
+static void (*const sections[])(bench *) = {bench_tables, bench_pools, bench_machine, bench_growth, bench_program};
 
 int main(int argc, char **argv)
 {
