@@ -58,6 +58,7 @@ typedef struct mw_track {
     mw_pool pool;               /* depth on bare plate */
     mw_pool conduction;
     double onset_index, cavity_depth_m, absorptivity;
+    bool by_table;              /* from the tables: see mw_sweep_by_table */
 } mw_track;
 mw_status mw_track_at(const mw_plan *plan, double power_W, double speed_m_per_s, double d4sigma_m, mw_track *out);
 
@@ -126,5 +127,9 @@ typedef mw_status (*mw_result_sink)(void *to, const mw_result *result);
 /* Runs the grid; rows of tracks are shared among `threads` threads (0: all cores) without influence on any byte of the result.
  * Errors: MW_BAD_VALUE, MW_TOO_LARGE (with the number of cells and what is allowed), MW_NO_MEMORY, the sink's own. */
 mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, int threads, mw_result_sink sink, void *to, mw_error *err);
+
+/* The same with the default model's pools from tables, within 3e-5 of the exact ones in width, depth and absorptivity: about a thousand times
+ * faster, for maps. Lengths, places, gradients, cooling rates and unmelted shares are NaN; no margins. Other models and bare plate are computed exactly. */
+mw_status mw_sweep_by_table(const mw_plan *plan, const mw_grid *grid, int threads, mw_result_sink sink, void *to, mw_error *err);
 
 #endif

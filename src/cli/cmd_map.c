@@ -470,7 +470,7 @@ static mw_status run(map_run *m, mw_error *err)
     if (status == MW_OK)
         status = make_panels(m, err);
     if (status == MW_OK)
-        status = mw_sweep(&m->plan, &m->axes.grid, false, threads, take_cell, m, err);
+        status = mw_sweep_by_table(&m->plan, &m->axes.grid, threads, take_cell, m, err);
     if (status == MW_OK && given(m->args, OPT_OUTPUT))
         status = draw(m, err);
     if (status == MW_OK)

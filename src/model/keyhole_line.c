@@ -121,6 +121,12 @@ static mw_status exact_lane(const mw_keyhole_input *input, const mw_keyhole_cons
     out->depth_m[i] = p.pool.depth_m;
     out->conduction_width_m[i] = p.conduction.width_m;
     out->onset_index[i] = p.onset_index;
+    if (out->melting_index != NULL)
+        out->melting_index[i] = (p.conduction.peak_temperature_K - in.melt.ambient_K) / (in.melt.isotherm_K - in.melt.ambient_K);
+    if (out->cavity_depth_m != NULL)
+        out->cavity_depth_m[i] = p.cavity_depth_m;
+    if (out->absorptivity != NULL)
+        out->absorptivity[i] = p.absorptivity;
     return status == MW_NO_MELT ? MW_OK : status;
 }
 
@@ -155,6 +161,12 @@ static mw_status block(const mw_keyhole_input *in, const mw_keyhole_constants *c
         out->depth_m[at + i] = depth[i];
         out->conduction_width_m[at + i] = w0[i] * k->sigma_m;
         out->onset_index[at + i] = onset[i];
+        if (out->melting_index != NULL)
+            out->melting_index[at + i] = flat[i];
+        if (out->cavity_depth_m != NULL)
+            out->cavity_depth_m[at + i] = relative[i] * k->d4sigma_m;
+        if (out->absorptivity != NULL)
+            out->absorptivity[at + i] = k->absorptivity * (inside[i] / flat[i]);
         if (!(flat[i] <= MW_TABLE_MOST_S && inside[i] <= MW_TABLE_MOST_S))
             status = exact_lane(in, c, power_W[i], at + i, out);
     }

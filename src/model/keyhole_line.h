@@ -13,6 +13,8 @@ typedef struct mw_pool_lanes {
     double *width_m, *depth_m;      /* depth on bare plate */
     double *conduction_width_m;     /* of the pool without a cavity, as balling takes it */
     double *onset_index;
+    double *melting_index;          /* computed peak temperature rise over the rise to melting, without a cavity; may be NULL, as the next two */
+    double *cavity_depth_m, *absorptivity;
 } mw_pool_lanes;
 
 /* `input` with its power and layer ignored. Errors: MW_BAD_VALUE, MW_NO_CONVERGENCE; the lanes are then undefined. */

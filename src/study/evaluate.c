@@ -154,8 +154,8 @@ static void add_criteria(const mw_plan *plan, const mw_track *track, double hatc
                                                 melt->volumetric_heat_J_per_m3K * (melt->isotherm_K - melt->ambient_K));
     r->overlap_index = mw_overlap_index(w, d, hatch_m, layer_m);
     r->overlap_index_effective = mw_overlap_index(w, d, hatch_m, mw_effective_layer(layer_m, MW_PACKING_DEFAULT));
-    r->unmelted_aligned = mw_unmelted_aligned(w, d, hatch_m, layer_m);
-    r->unmelted_scattered = mw_unmelted_scattered(w, d, hatch_m, layer_m);
+    r->unmelted_aligned = track->by_table ? NAN : mw_unmelted_aligned(w, d, hatch_m, layer_m);
+    r->unmelted_scattered = track->by_table ? NAN : mw_unmelted_scattered(w, d, hatch_m, layer_m);
     mw_judge(r->overlap_index, r->melt_energy_ratio, mw_verdict_limits(plan->kind), &r->judgement);
 }
 

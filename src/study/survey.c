@@ -89,7 +89,7 @@ static mw_status pool_sample(const survey *v, const mw_sample *s, double speed_m
 {
     const double *power = v->grid->power_W + v->first_power;
     const mw_keyhole_input in = input_of(v, s, speed_m_per_s);
-    const mw_pool_lanes out = {w->group[WIDTH][j], w->group[DEPTH][j], w->group[CONDUCTION][j], w->onset};
+    const mw_pool_lanes out = {w->group[WIDTH][j], w->group[DEPTH][j], w->group[CONDUCTION][j], w->onset, NULL, NULL, NULL};
     mw_keyhole_constants constants = v->plan->constants;
     constants.onset_ratio *= s->onset;
     const double enthalpy = in.melt.volumetric_heat_J_per_m3K * (in.melt.isotherm_K - in.melt.ambient_K);

@@ -8,6 +8,7 @@
 #include <omp.h>
 #endif
 
+#include "model/keyhole_line.h"
 #include "study/internal.h"
 
 /* Everything a running sweep holds. hatch and layer are never empty here: a missing axis is one NaN or one 0. */
@@ -56,6 +57,41 @@ mw_status mw_grid_check(const mw_grid *g, mw_error *err)
         return mw_fail(err, MW_TOO_LARGE, NULL, 0, "%zu powers x %zu speeds = %.4g pools is more than the %d allowed; use fewer values",
                        g->n_power, g->n_speed, tracks, MW_MOST_TRACKS);
     return MW_OK;
+}
+
+enum { MOST_IN_LINE = 128 };
+
+/* Tracks of one speed at powers `first`.. from the tables. */
+static mw_status track_line(const sweep *s, size_t iv, size_t first)
+{
+    const mw_grid *g = &s->grid;
+    const mw_plan *p = s->plan;
+    const size_t n = g->n_power - first < MOST_IN_LINE ? g->n_power - first : MOST_IN_LINE;
+    double width[MOST_IN_LINE], depth[MOST_IN_LINE], conduction[MOST_IN_LINE], onset[MOST_IN_LINE], melting[MOST_IN_LINE], cavity[MOST_IN_LINE], a[MOST_IN_LINE];
+    const mw_pool_lanes lanes = {width, depth, conduction, onset, melting, cavity, a};
+    const mw_keyhole_input in = {1, p->absorptivity, g->speed_m_per_s[iv], g->d4sigma_m, 0, p->melt, p->boil};
+    const mw_status status = mw_keyhole_line(&in, &p->constants, g->power_W + first, n, &lanes);
+    const mw_pool unknown = {NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN};
+    for (size_t i = 0; i < n && status == MW_OK; i++) {
+        mw_track *t = &s->track[(first + i) * g->n_speed + iv];
+        *t = (mw_track){g->power_W[first + i], g->speed_m_per_s[iv], g->d4sigma_m, width[i] > 0 ? MW_OK : MW_NO_MELT, unknown, unknown, onset[i], cavity[i], a[i], true};
+        t->pool.width_m = width[i];
+        t->pool.depth_m = depth[i];
+        t->conduction.width_m = conduction[i];
+        t->conduction.peak_temperature_K = p->melt.ambient_K + melting[i] * (p->melt.isotherm_K - p->melt.ambient_K);
+    }
+    return status;
+}
+
+static mw_status compute_by_table(sweep *s)
+{
+    const mw_grid *g = &s->grid;
+    int failed = 0;
+#pragma omp parallel for schedule(dynamic, 1) num_threads(s->threads) reduction(| : failed)
+    for (long iv = 0; iv < (long)g->n_speed; iv++)
+        for (size_t first = 0; first < g->n_power; first += MOST_IN_LINE)
+            failed |= track_line(s, (size_t)iv, first) != MW_OK;
+    return failed ? MW_NO_CONVERGENCE : MW_OK;
 }
 
 static void compute_tracks(sweep *s)
@@ -177,7 +213,7 @@ mw_status mw_grid_cut(mw_grid *g, mw_error *err)
     return MW_OK;
 }
 
-mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, int threads, mw_result_sink sink, void *to, mw_error *err)
+static mw_status run(const mw_plan *plan, const mw_grid *grid, bool with_margins, bool by_table, int threads, mw_result_sink sink, void *to, mw_error *err)
 {
     static const double single_track = NAN, bare_plate = 0;
     sweep s = {.plan = plan, .grid = *grid, .threads = threads};
@@ -211,8 +247,13 @@ mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, 
         status = mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory");
         goto done;
     }
-    compute_tracks(&s);
-    if (margins)
+    if (by_table)
+        status = compute_by_table(&s);
+    else
+        compute_tracks(&s);
+    if (status != MW_OK)
+        (void)mw_fail(err, status, NULL, 0, "%s", mw_status_sentence(status));
+    if (status == MW_OK && margins)
         status = compute_edges(&s, MW_ALONG_POWER, s.along_power, err);
     if (status == MW_OK && margins)
         status = compute_edges(&s, MW_ALONG_SPEED, s.along_speed, err);
@@ -223,4 +264,15 @@ done:
     free(s.along_power);
     free(s.track);
     return status;
+}
+
+mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, int threads, mw_result_sink sink, void *to, mw_error *err)
+{
+    return run(plan, grid, with_margins, false, threads, sink, to, err);
+}
+
+mw_status mw_sweep_by_table(const mw_plan *plan, const mw_grid *grid, int threads, mw_result_sink sink, void *to, mw_error *err)
+{
+    const bool bare = grid->n_layer == 0 || !(grid->layer_m[0] > 0); /* balling on bare plate asks for the length */
+    return run(plan, grid, false, plan->model == MW_MODEL_DEFAULT && !bare, threads, sink, to, err);
 }

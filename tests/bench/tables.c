@@ -81,7 +81,7 @@ static double default_by_table(void *v)
 {
     row_work *w = v;
     double power[ROW], width[ROW], depth[ROW], conduction[ROW], onset[ROW];
-    const mw_pool_lanes lanes = {width, depth, conduction, onset};
+    const mw_pool_lanes lanes = {width, depth, conduction, onset, NULL, NULL, NULL};
     for (int i = 0; i < ROW; i++)
         power[i] = power_of(i);
     const double start = bench_now();
@@ -219,7 +219,7 @@ static void agreement(bench *b, const mw_plan *plan)
     double farthest = 0;
     for (int i = 0; i < POOLS; i++) {
         double u[4], width, depth, conduction, onset;
-        const mw_pool_lanes lane = {&width, &depth, &conduction, &onset};
+        const mw_pool_lanes lane = {&width, &depth, &conduction, &onset, NULL, NULL, NULL};
         gsl_qrng_get(sequence, u);
         const double power = 40 * pow(15, u[0]), speed = 0.1 * pow(30, u[1]), d = 35e-6 * pow(5, u[2]);
         mw_track t;

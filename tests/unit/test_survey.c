@@ -35,7 +35,7 @@ static void lanes_follow_the_exact_pool(void **state)
     enum { N = 37 };
     gsl_qrng *sequence = gsl_qrng_alloc(gsl_qrng_sobol, 5);
     double power[N], width[N], depth[N], conduction[N], onset[N];
-    const mw_pool_lanes lanes = {width, depth, conduction, onset};
+    const mw_pool_lanes lanes = {width, depth, conduction, onset, NULL, NULL, NULL};
     for (int i = 0; i < N; i++)
         power[i] = 15 * pow(100, i / (double)(N - 1));
     for (int k = 0; k < 300; k++) {
@@ -67,7 +67,7 @@ static void unusual_constants_are_exact(void **state)
 {
     (void)state;
     double width, depth, conduction, onset;
-    const mw_pool_lanes lanes = {&width, &depth, &conduction, &onset};
+    const mw_pool_lanes lanes = {&width, &depth, &conduction, &onset, NULL, NULL, NULL};
     const double power = 250;
     mw_keyhole_constants c = mw_keyhole_defaults;
     c.blend_exponent = 2.5;
