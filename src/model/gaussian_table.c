@@ -94,53 +94,80 @@ bool mw_table_line_make(mw_table_quantity quantity, double peclet, mw_table_line
 
 enum { LANES = 32 };
 
-/* One block of LANES values: every segment that any lane needs is evaluated for all of them, and each lane keeps its own. */
-MW_WIDE static void block(const mw_table_line *line, bool linear, const double *restrict s, double *restrict out)
+/* z and t of a block, and what part of the tables it needs. */
+typedef struct place {
+    double z[LANES], t[LANES], least, most;
+} place;
+
+MW_WIDE static void find_place(const double *restrict s, place *restrict at)
 {
-    double r1[LANES], t[LANES], value[LANES];
     double least = 1, most = 0;
     for (int i = 0; i < LANES; i++) {
-        const double r = sqrt(sqrt(s[i] > 1 ? s[i] : 1));
-        r1[i] = r - 1;
-        t[i] = r1[i] / (r + 1);
-        value[i] = NAN;
+        const double z = sqrt(s[i] > 1 ? s[i] - 1 : 0);
+        at->z[i] = z;
+        at->t[i] = z / (z + MW_TABLE_HALF);
     }
     for (int i = 0; i < LANES; i++) {
-        least = t[i] < least ? t[i] : least;
-        most = t[i] > most ? t[i] : most;
+        least = at->t[i] < least ? at->t[i] : least;
+        most = at->t[i] > most ? at->t[i] : most;
     }
+    at->least = least;
+    at->most = most;
+}
+
+/* Every segment that any lane needs is evaluated for all of them, and each lane keeps its own. */
+MW_WIDE static void block(const mw_table_line *line, bool square, const place *restrict at, double *restrict out)
+{
+    double value[LANES];
+    for (int i = 0; i < LANES; i++)
+        value[i] = NAN; /* beyond the table */
     for (size_t k = 0; k < line->n; k++) {
         const double lo = line->edge[k], hi = line->edge[k + 1], middle = line->middle[k], scale = line->scale[k];
-        if (hi < least || lo > most)
+        if (hi < at->least || lo > at->most)
             continue;
         const double *c = line->c[k];
         for (int i = 0; i < LANES; i++) {
-            const double u = (t[i] - middle) * scale;
+            const double u = (at->t[i] - middle) * scale;
             double v = c[MW_TABLE_U - 1];
             for (int j = MW_TABLE_U - 2; j >= 0; j--)
                 v = v * u + c[j];
-            value[i] = t[i] >= lo && t[i] <= hi ? v : value[i];
+            value[i] = at->t[i] >= lo && at->t[i] <= hi ? v : value[i];
         }
     }
     for (int i = 0; i < LANES; i++) {
-        const double shape = linear ? r1[i] : sqrt(r1[i]);
-        const double v = shape * value[i];
-        out[i] = s[i] <= MW_TABLE_MOST_S ? v : NAN;
+        const double shape = square ? at->z[i] * at->z[i] : at->z[i];
+        out[i] = shape * value[i];
+    }
+}
+
+/* NaN above what the tables promise, though their last segment reaches a little farther. */
+static void cut_off(const double *s, size_t n, double *out)
+{
+    for (size_t i = 0; i < n; i++)
+        out[i] = s[i] <= MW_TABLE_MOST_S ? out[i] : NAN;
+}
+
+void mw_table_lines_eval(const mw_table_line *const line[], const mw_table_quantity quantity[], size_t n_line, const double *s, size_t n, double *const out[])
+{
+    for (size_t i = 0; i < n; i += LANES) {
+        place at;
+        double rest[LANES], value[LANES];
+        const size_t m = n - i < LANES ? n - i : LANES;
+        for (size_t k = 0; m < LANES && k < LANES; k++)
+            rest[k] = s[i + (k < m ? k : m - 1)];
+        find_place(m < LANES ? rest : s + i, &at);
+        for (size_t q = 0; q < n_line; q++) {
+            double *to = m < LANES ? value : out[q] + i;
+            block(line[q], quantity[q] == MW_TABLE_DEPTH, &at, to);
+            for (size_t k = 0; m < LANES && k < m; k++)
+                out[q][i + k] = value[k];
+            if (!(at.most <= line[q]->edge[line[q]->n] * (1 - 1e-4)))
+                cut_off(s + i, m, out[q] + i);
+        }
     }
 }
 
 void mw_table_line_eval(const mw_table_line *line, mw_table_quantity quantity, const double *s, size_t n, double *out)
 {
-    const bool linear = quantity == MW_TABLE_DEPTH;
-    size_t i = 0;
-    for (; i + LANES <= n; i += LANES)
-        block(line, linear, s + i, out + i);
-    if (i == n)
-        return;
-    double rest[LANES], value[LANES];
-    for (size_t k = 0; k < LANES; k++)
-        rest[k] = s[i + k < n ? i + k : n - 1];
-    block(line, linear, rest, value);
-    for (size_t k = 0; i + k < n; k++)
-        out[i + k] = value[k];
+    mw_table_lines_eval(&line, &quantity, 1, s, n, &out);
 }

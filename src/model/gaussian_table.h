@@ -3,8 +3,8 @@
  * (src/generate) and within 1e-5 of it. A row holds one Peclet number: its series are contracted once and then evaluated for many strengths,
  * with + - * / and square roots alone, so that the result is the same for every width of vector.
  *
- * Coordinates: s = B Imax(P) > 1 melts; r = s^(1/4), t = (r-1)/(r+1). Stored: W/sqrt(r-1), D/(r-1), L/sqrt(r-1), all in sigma, which are smooth
- * down to the edge of melting. Where two widest places compete (P above about 2.88) the series of W end at the switch curve. */
+ * Coordinates: s = B Imax(P) > 1 melts; z = sqrt(s-1), t = z/(z+2). Stored: W/z, D/z^2, L/z, all in sigma, which are smooth down to the edge of
+ * melting. Where two widest places compete (P above about 2.88) the series of W end at the switch curve. */
 #ifndef MELTWRIGHT_MODEL_GAUSSIAN_TABLE_H
 #define MELTWRIGHT_MODEL_GAUSSIAN_TABLE_H
 
@@ -15,6 +15,7 @@
 #define MW_TABLE_LEAST_PECLET 7e-4
 #define MW_TABLE_MOST_PECLET 110.0
 #define MW_TABLE_MOST_S 3000.0
+#define MW_TABLE_HALF 2.0 /* z at which t is one half */
 
 enum { MW_TABLE_U = 10, MW_TABLE_Y = 8, MW_TABLE_SEGMENTS = 40 }; /* coefficients along u and y; most segments of a row */
 
@@ -32,6 +33,9 @@ bool mw_table_line_make(mw_table_quantity quantity, double peclet, mw_table_line
 
 /* out[i] in sigma for s[i]; 0 where s <= 1 (no melt), NaN above MW_TABLE_MOST_S. Any order; rising or equal s is fastest. Arrays may not overlap. */
 void mw_table_line_eval(const mw_table_line *line, mw_table_quantity quantity, const double *s, size_t n, double *out);
+
+/* Several quantities of the same Peclet number at once: what they share is worked out once. */
+void mw_table_lines_eval(const mw_table_line *const line[], const mw_table_quantity quantity[], size_t n_line, const double *s, size_t n, double *const out[]);
 
 /* Largest value of the integral, as mw_gaussian_peak, and the heat of the moving cylinder, as mw_cylinder_heat, to 1e-11 in the range
  * MW_TABLE_LEAST_PECLET/10 to MW_TABLE_MOST_PECLET*2; NaN outside. */

@@ -62,7 +62,8 @@ MW_WIDE static void cavity_lanes(const line_constants *k, const double *restrict
         const double s = k->onset_per_W * power[i], full = k->full_per_W * power[i], open_s = s > 1 ? s : 1;
         const double gate = 1 - whole_power(1 / open_s, k->gate);
         const double b = a * full - 1, root = sqrt(b * b + 4 * a * a0 * full);
-        const double open = b < 0 ? 2 * a0 * full / (root - b) : (b + root) / (2 * a);
+        const double over = b < 0 ? 2 * a0 * full : b + root, under = b < 0 ? root - b : 2 * a; /* without cancellation */
+        const double open = over / under;
         const double x = gate * open;
         onset[i] = s;
         relative[i] = x;
@@ -76,8 +77,8 @@ MW_WIDE static void surface_lanes(const double *restrict relative, const double 
                                   double *restrict surface)
 {
     for (int i = 0; i < LANES; i++) {
-        const double taken = 4 * relative[i] / (width[i] > 0 ? width[i] : 1); /* h/W, both in sigma */
-        surface[i] = inside[i] / (1 + taken);
+        const double w = width[i] > 0 ? width[i] : 1; /* in sigma, as h = 4 relative */
+        surface[i] = inside[i] * w / (w + 4 * relative[i]);
     }
 }
 
@@ -141,8 +142,8 @@ static mw_status block(const mw_keyhole_input *in, const mw_keyhole_constants *c
     cavity_lanes(k, power, onset, relative, flat, inside);
     for (size_t i = 0; i < n; i++)
         cavity = cavity || onset[i] > 1;
-    mw_table_line_eval(&k->width, MW_TABLE_WIDTH, flat, n, w0);
-    mw_table_line_eval(&k->depth, MW_TABLE_DEPTH, flat, n, depth);
+    mw_table_lines_eval((const mw_table_line *const[]){&k->width, &k->depth}, (const mw_table_quantity[]){MW_TABLE_WIDTH, MW_TABLE_DEPTH}, 2, flat, n,
+                        (double *const[]){w0, depth});
     if (cavity) {
         mw_table_line_eval(&k->width, MW_TABLE_WIDTH, inside, n, w1);
         for (size_t i = n; i < LANES; i++)
