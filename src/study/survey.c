@@ -39,8 +39,8 @@ typedef enum quantity { WIDTH, DEPTH, CONDUCTION, ROWS } quantity;
 /* One thread's own memory. */
 typedef struct workspace {
     float *row[ROWS];                         /* [power][sample], um */
-    float energy_power[CHUNK];                /* per sample, see survey_lanes.h */
-    float across[CHUNK], down[CHUNK];
+    float energy[CHUNK], energy_power[CHUNK]; /* per sample, see survey_lanes.h */
+    float across[CHUNK], scratch[3 * CHUNK];
     double group[ROWS][GROUP][MOST_POWERS], onset[MOST_POWERS];
     uint32_t *nominal, *keyhole; /* of the hatches of one layer */
 } workspace;
@@ -94,6 +94,7 @@ static mw_status pool_sample(const survey *v, const mw_sample *s, double speed_m
     constants.onset_ratio *= s->onset;
     const double enthalpy = in.melt.volumetric_heat_J_per_m3K * (in.melt.isotherm_K - in.melt.ambient_K);
     const double energy = mw_melt_energy_ratio(in.absorptivity, speed_m_per_s, 1e-6, 1e-6, enthalpy) / v->limits->energy_half;
+    w->energy[i] = (float)energy;
     w->energy_power[i] = (float)pow(energy, v->exponent);
     return mw_keyhole_line(&in, &constants, power, v->n_power, &out);
 }
@@ -120,7 +121,7 @@ static mw_status fill_chunk(const survey *v, const mw_sample *sample, size_t n, 
                     return status;
                 continue;
             }
-            w->energy_power[i] = 0;
+            w->energy[i] = w->energy_power[i] = 0;
             for (int r = 0; r < ROWS; r++)
                 memset(w->group[r][j], 0, v->n_power * sizeof w->group[r][j][0]);
         }
@@ -137,12 +138,12 @@ static void count_power(survey *v, size_t speed, size_t k, size_t lanes, workspa
     const size_t line = k * v->n_speed + speed, cell = line * v->n_pairs, at = k * STRIDE;
     const double power_W = g->power_W[v->first_power + k], speed_m_per_s = g->speed_m_per_s[v->first_speed + speed];
     const double weber = v->plan->density_cold_kg_per_m3 * speed_m_per_s * speed_m_per_s * 1e-6 / v->plan->surface_tension_N_per_m / mw_balling_constants()->weber;
-    const mw_survey_lanes l = {lanes, w->row[WIDTH] + at, w->row[DEPTH] + at, w->row[CONDUCTION] + at, w->energy_power,
-                               (float)pow(power_W, v->exponent), (float)weber};
+    const mw_survey_lanes l = {lanes, w->row[WIDTH] + at, w->row[DEPTH] + at, w->row[CONDUCTION] + at, w->energy, w->energy_power,
+                               (float)power_W, (float)pow(power_W, v->exponent), (float)weber};
     mw_survey_widths(&l, w->across);
     for (size_t t = 0; t < g->n_layer; t++) {
         uint32_t balling;
-        mw_survey_count(&l, w->across, &v->layer[t], &v->pair[t * g->n_hatch], g->n_hatch, w->down, w->nominal, w->keyhole, &balling);
+        mw_survey_count(&l, w->across, &v->layer[t], &v->pair[t * g->n_hatch], g->n_hatch, w->scratch, w->nominal, w->keyhole, &balling);
         v->balling[line * g->n_layer + t] = (uint16_t)(v->balling[line * g->n_layer + t] + balling);
         for (size_t h = 0; h < g->n_hatch; h++) {
             uint16_t *nominal = &v->nominal[cell + h * g->n_layer + t], *keyhole = &v->keyhole[cell + h * g->n_layer + t];

@@ -8,12 +8,13 @@
 
 /* Per sample, n of them (a multiple of MW_SURVEY_LANES; the surplus is padded so that it counts nowhere as nominal, keyhole or balling):
  *   width, depth, conduction   um: width, depth on bare plate, width without a cavity; 0 without a pool
- *   energy_power    melt energy ratio per watt times hatch times layer in um2, over the even-odds value, to the power energy_slope/overlap_slope: with
- *                   that exponent its odds compare with those of the overlap index over its own even-odds value */
+ *   energy          melt energy ratio per watt times hatch times layer in um2, over the even-odds value
+ *   energy_power    the same to the power energy_slope/overlap_slope: with that exponent its odds compare with those of the overlap index over its
+ *                   own even-odds value */
 typedef struct mw_survey_lanes {
     size_t n;
-    const float *width, *depth, *conduction, *energy_power;
-    float power_power; /* laser power in W to that exponent */
+    const float *width, *depth, *conduction, *energy, *energy_power;
+    float power, power_power; /* laser power in W, and to that exponent */
     float weber;              /* balling index per um of conduction width, but for the layer's factor */
 } mw_survey_lanes;
 
@@ -34,8 +35,8 @@ typedef struct mw_survey_layer {
 
 /* What the layers share: 1/W^2 of each lane. */
 void mw_survey_widths(const mw_survey_lanes *lanes, float *across);
-/* nominal[p] and keyhole[p] for n_pair hatches of one layer are set to counts; *balling too. `down` is scratch for n lanes. */
-void mw_survey_count(const mw_survey_lanes *lanes, const float *across, const mw_survey_layer *layer, const mw_survey_pair *pair, size_t n_pair, float *down,
+/* nominal[p] and keyhole[p] for n_pair hatches of one layer are set to counts; *balling too. `scratch` has room for three times n. */
+void mw_survey_count(const mw_survey_lanes *lanes, const float *across, const mw_survey_layer *layer, const mw_survey_pair *pair, size_t n_pair, float *scratch,
                      uint32_t *nominal, uint32_t *keyhole, uint32_t *balling);
 
 #endif
