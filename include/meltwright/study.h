@@ -63,7 +63,7 @@ typedef struct mw_track {
 mw_status mw_track_at(const mw_plan *plan, double power_W, double speed_m_per_s, double d4sigma_m, mw_track *out);
 
 /* How far one factor alone can move before the verdict leaves nominal, in percent. 0 where the setting is not nominal, NaN
- * where nothing is met within a factor of five. */
+ * where nothing is met within a factor of five. Right to 0.01 of a percent of the factor. */
 typedef struct mw_margins {
     double power_down_pct, power_up_pct, speed_down_pct, speed_up_pct;
 } mw_margins;

@@ -22,8 +22,8 @@ static double position(mw_factor factor, const mw_track *track)
 /* The track at another value of the factor. */
 static mw_status track_at(const mw_plan *plan, mw_factor factor, const mw_track *base, double value, mw_track *out)
 {
-    return factor == MW_ALONG_POWER ? mw_track_at(plan, value, base->speed_m_per_s, base->d4sigma_m, out)
-                                    : mw_track_at(plan, base->power_W, value, base->d4sigma_m, out);
+    return factor == MW_ALONG_POWER ? mw_quick_tracks(plan, base->speed_m_per_s, base->d4sigma_m, &value, 1, out)
+                                    : mw_quick_tracks(plan, value, base->d4sigma_m, &base->power_W, 1, out);
 }
 
 /* Window distance of a track at a hatch and layer: positive inside. Only what the verdict needs. */
@@ -108,11 +108,15 @@ mw_status mw_nearest_edge(const mw_plan *plan, const mw_result *r, mw_factor fac
     const double step = log(MW_LINE_RATIO);
     mw_track before, next;
     *edge = NAN;
-    mw_status status = mw_track_at(plan, r->setting.power_W, r->setting.speed_m_per_s, r->setting.d4sigma_m, &before);
+    mw_status status = mw_quick_tracks(plan, r->setting.speed_m_per_s, r->setting.d4sigma_m, &r->setting.power_W, 1, &before);
     if (status < 0)
         return status;
     const double value = position(factor, &before);
     double f = distance(plan, &before, r->setting.hatch_m, r->setting.layer_m);
+    if ((f > 0) != (r->judgement.verdict == MW_NOMINAL)) { /* so close to the edge that the tables see it on the other side */
+        *edge = value;
+        return MW_OK;
+    }
     /* The same absolute places as a line has, from the setting outward, until the first change. */
     for (long i = (long)(up ? floor(log(value) / step) + 1 : ceil(log(value) / step) - 1);; i += up ? 1 : -1) {
         const double at = exp((double)i * step);

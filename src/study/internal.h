@@ -16,9 +16,13 @@ void mw_intervals_at(const mw_plan *plan, bool outside, mw_result *result);
 /* Margins of one judged result, by a search of its own. */
 mw_status mw_margins_at(const mw_plan *plan, const mw_result *result, mw_margins *out);
 
+/* Tracks of one speed at several powers: of the default model from the tables (see mw_sweep_by_table; each value the same whatever stands beside it),
+ * of the others exact. */
+mw_status mw_quick_tracks(const mw_plan *plan, double speed_m_per_s, double d4sigma_m, const double *power_W, size_t n, mw_track *out);
+
 /* ---- edges along one factor ----
  * A line holds tracks over rising values of power (or speed) with the other factor fixed. The edges of a (hatch, layer) on
- * it are the values where the verdict enters or leaves nominal. */
+ * it are the values where the verdict enters or leaves nominal. The search runs on quick tracks: an edge is right to 1e-4 of its value. */
 typedef enum mw_factor { MW_ALONG_POWER, MW_ALONG_SPEED } mw_factor;
 
 /* Values at which a line over rising values is laid out: powers of MW_LINE_RATIO from a fifth of the first to five times the last. They

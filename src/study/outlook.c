@@ -19,8 +19,8 @@ static mw_verdict verdict_at(const mw_plan *plan, mw_setting s)
 static void set_turn(const mw_plan *plan, const mw_setting *from, size_t offset, double value, double at, mw_turn *out)
 {
     mw_setting beyond = *from;
-    /* Far enough past the edge for the root's own tolerance, near enough for the engineer. */
-    *(double *)((char *)&beyond + offset) = at * (at > value ? 1 + 1e-5 : 1 - 1e-5);
+    /* Far enough past the edge for its own tolerance, near enough for the engineer. */
+    *(double *)((char *)&beyond + offset) = at * (at > value ? 1 + 2e-4 : 1 - 2e-4);
     *out = (mw_turn){at, 100 * (at / value - 1), verdict_at(plan, beyond)};
 }
 

@@ -8,7 +8,6 @@
 #include <omp.h>
 #endif
 
-#include "model/keyhole_line.h"
 #include "study/internal.h"
 
 /* Everything a running sweep holds. hatch and layer are never empty here: a missing axis is one NaN or one 0. */
@@ -19,6 +18,15 @@ typedef struct sweep {
     mw_track *track;                  /* n_power x n_speed, speed fastest */
     mw_edges *along_power, *along_speed; /* [line][hatch][layer]; line = speed index, power index */
 } sweep;
+
+static int thread_number(void)
+{
+#ifdef _OPENMP
+    return omp_get_thread_num();
+#else
+    return 0;
+#endif
+}
 
 static mw_status check_axis(const char *name, const double *value, size_t n, mw_error *err)
 {
@@ -59,38 +67,22 @@ mw_status mw_grid_check(const mw_grid *g, mw_error *err)
     return MW_OK;
 }
 
-enum { MOST_IN_LINE = 128 };
-
-/* Tracks of one speed at powers `first`.. from the tables. */
-static mw_status track_line(const sweep *s, size_t iv, size_t first)
-{
-    const mw_grid *g = &s->grid;
-    const mw_plan *p = s->plan;
-    const size_t n = g->n_power - first < MOST_IN_LINE ? g->n_power - first : MOST_IN_LINE;
-    double width[MOST_IN_LINE], depth[MOST_IN_LINE], conduction[MOST_IN_LINE], onset[MOST_IN_LINE], melting[MOST_IN_LINE], cavity[MOST_IN_LINE], a[MOST_IN_LINE];
-    const mw_pool_lanes lanes = {width, depth, conduction, onset, melting, cavity, a};
-    const mw_keyhole_input in = {1, p->absorptivity, g->speed_m_per_s[iv], g->d4sigma_m, 0, p->melt, p->boil};
-    const mw_status status = mw_keyhole_line(&in, &p->constants, g->power_W + first, n, &lanes);
-    const mw_pool unknown = {NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN};
-    for (size_t i = 0; i < n && status == MW_OK; i++) {
-        mw_track *t = &s->track[(first + i) * g->n_speed + iv];
-        *t = (mw_track){g->power_W[first + i], g->speed_m_per_s[iv], g->d4sigma_m, width[i] > 0 ? MW_OK : MW_NO_MELT, unknown, unknown, onset[i], cavity[i], a[i], true};
-        t->pool.width_m = width[i];
-        t->pool.depth_m = depth[i];
-        t->conduction.width_m = conduction[i];
-        t->conduction.peak_temperature_K = p->melt.ambient_K + melting[i] * (p->melt.isotherm_K - p->melt.ambient_K);
-    }
-    return status;
-}
-
+/* Speed by speed, since a line of powers is what the tables do at once. */
 static mw_status compute_by_table(sweep *s)
 {
     const mw_grid *g = &s->grid;
+    mw_track *line = malloc((size_t)s->threads * g->n_power * sizeof *line);
+    if (line == NULL)
+        return MW_NO_MEMORY;
     int failed = 0;
 #pragma omp parallel for schedule(dynamic, 1) num_threads(s->threads) reduction(| : failed)
-    for (long iv = 0; iv < (long)g->n_speed; iv++)
-        for (size_t first = 0; first < g->n_power; first += MOST_IN_LINE)
-            failed |= track_line(s, (size_t)iv, first) != MW_OK;
+    for (long iv = 0; iv < (long)g->n_speed; iv++) {
+        mw_track *mine = line + (size_t)thread_number() * g->n_power;
+        failed |= mw_quick_tracks(s->plan, g->speed_m_per_s[iv], g->d4sigma_m, g->power_W, g->n_power, mine) != MW_OK;
+        for (size_t i = 0; i < g->n_power; i++)
+            s->track[i * g->n_speed + (size_t)iv] = mine[i];
+    }
+    free(line);
     return failed ? MW_NO_CONVERGENCE : MW_OK;
 }
 
@@ -123,13 +115,11 @@ static mw_status compute_edges(sweep *s, mw_factor factor, mw_edges *edges, mw_e
     int failed = 0;
 #pragma omp parallel for schedule(dynamic, 1) num_threads(s->threads) reduction(| : failed)
     for (long l = 0; l < n_line; l++) {
-#ifdef _OPENMP
-        mw_track *mine = track + n * (size_t)omp_get_thread_num();
-#else
-        mw_track *mine = track;
-#endif
-        for (size_t i = 0; i < n; i++)
-            (void)mw_track_at(s->plan, power ? at[i] : other[l], power ? other[l] : at[i], g->d4sigma_m, &mine[i]);
+        mw_track *mine = track + n * (size_t)thread_number();
+        if (power)
+            failed |= mw_quick_tracks(s->plan, other[l], g->d4sigma_m, at, n, mine) != MW_OK;
+        for (size_t i = 0; i < n && !power; i++)
+            failed |= mw_quick_tracks(s->plan, at[i], g->d4sigma_m, &other[l], 1, &mine[i]) != MW_OK;
         const mw_line line = {s->plan, factor, mine, n};
         for (size_t p = 0; p < n_pairs; p++)
             failed |= mw_edges_on(&line, g->hatch_m[p / g->n_layer], g->layer_m[p % g->n_layer],

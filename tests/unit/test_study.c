@@ -270,7 +270,7 @@ static void margins_are_where_the_verdict_flips(void **state)
             found++;
             mw_result r;
             assert_true(mw_evaluate(&plan, &s, true, &r, NULL) >= 0);
-            const double hair = 1e-5;
+            const double hair = 1e-4; /* as stated of an edge */
             const struct { double pct; int power, up; } m[] = {{r.margins.power_down_pct, 1, 0}, {r.margins.power_up_pct, 1, 1},
                                                                {r.margins.speed_down_pct, 0, 0}, {r.margins.speed_up_pct, 0, 1}};
             for (int k = 0; k < 4; k++) {
@@ -322,7 +322,7 @@ static void an_outlook_names_the_verdict_beyond_each_turn(void **state)
                 if (isnan(t->at))
                     continue;
                 found++;
-                const double here = *(const double *)((const char *)&settings[i] + offset[k]), hair = up ? 2e-5 : -2e-5;
+                const double here = *(const double *)((const char *)&settings[i] + offset[k]), hair = up ? 1e-4 : -1e-4;
                 mw_setting before = settings[i], past = settings[i];
                 *(double *)((char *)&before + offset[k]) = t->at * (1 - hair);
                 *(double *)((char *)&past + offset[k]) = t->at * (1 + hair);
