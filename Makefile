@@ -41,7 +41,7 @@ PROGRAM  := $(B)/meltwright
 
 .DELETE_ON_ERROR:
 .SECONDARY:
-.PHONY: all demo check test plots validate bench coverage install uninstall clean help setup FORCE
+.PHONY: all demo check test plots validate bench coverage install uninstall clean help setup setup-check FORCE
 
 all: $(PROGRAM) $(B)/libmeltwright.so $(B)/meltwright.pc ## build library and program (set-up must have run once)
 
@@ -53,12 +53,15 @@ help: ## this list
 setup: ## find compiler, GSL, cJSON, PLplot, font, test library; install what is missing where allowed
 	@sh .ci/setup
 
+setup-check:
+	@sh .ci/setup check
+
 # Everything on a fresh machine. The second make starts after set-up, so that its probes see the new tools.
 demo: setup ## set up, build, and run the main job on the demo case
 	@$(MAKE) --no-print-directory all
 	@sh tests/demo/run.sh $(PROGRAM)
 
-check: setup ## set up, build, and run every test
+check: setup-check ## set up, build, and run every test
 	@$(MAKE) --no-print-directory test
 
 test: all $(TESTS) # without set-up

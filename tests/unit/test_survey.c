@@ -195,6 +195,46 @@ static void any_thread_count_and_any_part_gives_the_same(void **state)
     free(sample);
 }
 
+typedef struct both {
+    mw_result by_table[CELLS];
+    size_t n, compared;
+} both;
+
+static mw_status keep_result(void *to, const mw_result *r)
+{
+    both *b = to;
+    b->by_table[b->n++] = *r;
+    return MW_OK;
+}
+
+static mw_status compare_result(void *to, const mw_result *exact)
+{
+    both *b = to;
+    const mw_result *r = &b->by_table[b->compared++];
+    assert_memory_equal(&r->setting, &exact->setting, sizeof r->setting);
+    assert_int_equal(r->status, exact->status);
+    CHECK_REL(r->pool.width_m, exact->pool.width_m, 3e-5);
+    CHECK_REL(r->pool.depth_m, exact->pool.depth_m, 3e-5);
+    CHECK_REL(r->absorptivity, exact->absorptivity, 3e-5);
+    CHECK_NEAR(r->cavity_depth_m, exact->cavity_depth_m, 3e-5 * exact->cavity_depth_m);
+    CHECK_REL(r->balling_index, exact->balling_index, 3e-5);
+    CHECK_REL(r->conduction.peak_temperature_K, exact->conduction.peak_temperature_K, 1e-9);
+    CHECK_NEAR(r->judgement.p_nominal, exact->judgement.p_nominal, 2e-4);
+    assert_true(isnan(r->pool.length_m) && isnan(r->unmelted_scattered));
+    return MW_OK;
+}
+
+static void a_sweep_by_table_is_the_sweep(void **state)
+{
+    (void)state;
+    static both b;
+    mw_error err;
+    const mw_grid grid = small_grid();
+    assert_int_equal(mw_sweep_by_table(&plan, &grid, 2, keep_result, &b, &err), MW_OK);
+    assert_int_equal(mw_sweep(&plan, &grid, false, 2, compare_result, &b, &err), MW_OK);
+    assert_int_equal(b.compared, CELLS);
+}
+
 static mw_status stop_at_five(void *to, const mw_survey_cell *cell)
 {
     (void)cell;
@@ -256,6 +296,7 @@ int main(void)
         cmocka_unit_test(unusual_constants_are_exact),
         cmocka_unit_test(counts_are_the_exact_verdicts),
         cmocka_unit_test(any_thread_count_and_any_part_gives_the_same),
+        cmocka_unit_test(a_sweep_by_table_is_the_sweep),
         cmocka_unit_test(misuse_is_answered),
         cmocka_unit_test(draws_have_the_widths_of_the_card),
     };

@@ -31,3 +31,32 @@ refuse 'more parts than rows' 2 'fewer rows than that' -- sweep $S --shard 49/49
 refuse 'parts of json' 2 'parts of other formats do not join' -- sweep $S --shard 1/2 --format json
 refuse 'an option of another version' 2 'lot is not in this version' -- sweep $S --lot a.json
 refuse 'a seed without samples' 2 'seed goes with --samples' -- sweep $S --seed 1
+# Under doubt: shares of the samples.
+expect 'samples as csv' 0 '^power_W,speed_mm_per_s,hatch_um,layer_um,d4sigma_um,preheat_C,volumetric_energy_J_per_mm3,build_rate_cm3_per_h,samples,share_nominal,share_lack_of_fusion,share_keyhole,share_balling$
+^150,600,90,30,80,20,' '48 settings x 200 samples' -- sweep $S --samples 200
+awk -F, 'NR > 1 && ($10 + $11 + $12 < 0.999999 || $10 + $11 + $12 > 1.000001 || $9 != 200) { bad = 1 } END { exit bad || NR != 49 }' out &&
+    pass 'shares sum to one in every cell' || fail 'shares sum to one in every cell' ''
+expect 'samples as json' 0 '"results": \[
+"share_balling": ' - -- sweep $S --samples 20 --format json --quiet
+expect 'samples as text' 0 'share of the samples' - -- sweep $S --samples 20 --format text --quiet
+for t in 1 2 5; do "$program" sweep $S --samples 300 --quiet --threads $t >by$t.csv; done
+cmp -s by1.csv by2.csv && cmp -s by1.csv by5.csv && pass 'same shares on any number of threads' || fail 'same shares on any number of threads' ''
+"$program" sweep $S --samples 300 --seed 2 --quiet >seed2.csv
+cmp -s by1.csv seed2.csv && fail 'another seed, other draws' 'same bytes' || pass 'another seed, other draws'
+rm -f parts.csv
+for i in 1 2 3 4 5; do "$program" sweep $S --samples 300 --quiet --shard $i/5 >>parts.csv; done
+cmp -s by1.csv parts.csv && pass 'shares in 5 parts' || fail 'shares in 5 parts' ''
+for n in 0 -3 1.5 65536 many; do refuse "$n samples" 3 'samples' -- sweep $S --samples $n; done
+refuse 'a seed out of range' 3 'seed must be a whole number' -- sweep $S --samples 5 --seed -1
+refuse 'samples of tracks' 2 'samples need a hatch and a layer' -- sweep --alloy 316L --d4sigma 80 --power 150 --speed 600 --samples 5
+refuse 'samples of another model' 2 'samples need the default model' -- sweep $S --samples 5 --model gaussian
+# The README's recipe for many cores, as it stands there (GNU parallel is what Debian's package of that name installs).
+grep -o 'seq 1 8 | parallel .*' "$root/README.md" | head -n 1 >recipe
+if parallel --version 2>/dev/null | grep -q '^GNU parallel'; then
+    sh recipe >/dev/null 2>err
+    "$program" $(sed 's/.* meltwright \(sweep .*\) --shard .*/\1/' recipe) --quiet >whole.csv 2>/dev/null
+    [ -s whole.csv ] && cmp -s whole.csv window.csv && pass 'shards by parallel join to the whole' || fail 'shards by parallel join to the whole' "$(wc -c <whole.csv) $(wc -c <window.csv)"
+else
+    echo 'not ok GNU parallel is missing: make check installs it'
+    failed=$((failed + 1))
+fi
