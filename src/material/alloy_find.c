@@ -348,6 +348,36 @@ static mw_status not_found(const catalogue *c, const char *word, const char *con
     return mw_fail(err, MW_NOT_FOUND, NULL, 0, "no alloy card \"%.80s\"%s", word, tail);
 }
 
+/* ---- the usual case ---- */
+
+static bool has_cards(const char *dir)
+{
+    char **files = NULL;
+    size_t n = 0;
+    const mw_status status = list_files(dir, &files, &n, NULL);
+    mw_names_free(files, n);
+    return status != MW_OK || n > 0;
+}
+
+/* A card that lies as NAME.json in the first folder that has any is read alone. False when it is not so, or anything is odd: the whole search then
+ * finds it, or says what is wrong. */
+static bool load_by_file_name(const char *name, const char *const dirs[], size_t n_dir, mw_alloy **out)
+{
+    size_t i = 0;
+    while (i < n_dir && !has_cards(dirs[i]))
+        i++;
+    char path[1024];
+    if (i == n_dir || snprintf(path, sizeof path, "%s%s%s.json", dirs[i], dirs[i][0] != '\0' && dirs[i][strlen(dirs[i]) - 1] == '/' ? "" : "/", name) >= (int)sizeof path)
+        return false;
+    if (mw_alloy_load(path, out, NULL) != MW_OK)
+        return false;
+    if (strcmp((*out)->name, name) == 0)
+        return true;
+    mw_alloy_free(*out);
+    *out = NULL;
+    return false;
+}
+
 /* ---- public ---- */
 
 mw_status mw_alloy_find(const char *name, const char *const dirs[], size_t n_dir, mw_alloy **out, mw_error *err)
@@ -355,6 +385,8 @@ mw_status mw_alloy_find(const char *name, const char *const dirs[], size_t n_dir
     *out = NULL;
     if (strchr(name, '/') != NULL || ends_in(name, ".json"))
         return mw_alloy_load(name, out, err);
+    if (load_by_file_name(name, dirs, n_dir, out))
+        return MW_OK;
     catalogue c = {0};
     const entry *found = NULL;
     mw_status status = MW_OK;
