@@ -132,6 +132,10 @@ typedef struct mw_judgement {
 } mw_judgement;
 void mw_judge(double overlap_index, double melt_energy_ratio, const mw_limits *limits, mw_judgement *out);
 
+/* The same verdict with less certainty: the logarithms of both odds are divided by `doubt` (at least 1) for the three probabilities. For settings
+ * outside the record, where nothing shows that the odds still hold. The odds themselves and the verdict stay. */
+void mw_judge_with_doubt(mw_judgement *judgement, double doubt);
+
 /* How far inside the window: -ln(max odds). Positive exactly where the verdict is nominal; continuous. */
 double mw_window_distance(const mw_judgement *judgement);
 

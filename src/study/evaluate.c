@@ -181,6 +181,8 @@ void mw_result_at(const mw_plan *plan, const mw_track *track, double hatch_m, do
     const bool outside = is_outside(plan, &out->setting);
     out->status = track->status != MW_OK ? track->status : outside ? MW_OUTSIDE_CHECKED : MW_OK;
     add_criteria(plan, track, hatch_m, layer_m, out);
+    if (outside && out->judged)
+        mw_judge_with_doubt(&out->judgement, MW_OUTSIDE_DOUBT);
     mw_intervals_at(plan, outside, out);
     out->margins = (mw_margins){NAN, NAN, NAN, NAN};
 }

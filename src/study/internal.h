@@ -10,6 +10,9 @@ mw_status mw_grid_check(const mw_grid *grid, mw_error *err);
 /* Leaves only the powers that the wanted cells need; cells are then counted from the first of them. */
 mw_status mw_grid_cut(mw_grid *grid, mw_error *err);
 
+/* Outside the record the sds of the intervals are multiplied, and the logarithms of the odds divided, by this: a judgement, not a measurement. */
+#define MW_OUTSIDE_DOUBT 1.5
+
 /* Fills the interval fields of a result that has its pool. */
 void mw_intervals_at(const mw_plan *plan, bool outside, mw_result *result);
 

@@ -19,8 +19,6 @@ static const double residual_length = 0.20; /* ten settings of one institution o
 static const double coupling_inside_pct = 10;
 /* The usual doubt about a published beam that is inside the residuals: what brings the depths of whole papers onto one curve. */
 static const double beam_inside_pct = 20;
-/* Outside the record the sds are widened; the factor is a judgement, not a measurement. */
-static const double outside_factor = 1.5;
 
 /* What `pct` has beyond what the residuals hold, as a sd of the logarithm. */
 static double beyond(double pct, double inside_pct)
@@ -46,7 +44,7 @@ void mw_intervals_at(const mw_plan *plan, bool outside, mw_result *r)
         class++;
     const double coupling = beyond(plan->alloy->property[MW_PROP_COUPLING].uncertainty_pct, coupling_inside_pct);
     const double beam = beyond(plan->beam_uncertainty_pct, beam_inside_pct);
-    const double widen = outside ? outside_factor : 1;
+    const double widen = outside ? MW_OUTSIDE_DOUBT : 1;
     const double width = hypot(residual[class].width_coupling * coupling, residual[class].width_beam * beam);
     const double depth = hypot(residual[class].depth_coupling * coupling, residual[class].depth_beam * beam);
     interval(r->pool.width_m, widen * hypot(residual[class].width, width), &r->width_lo_m, &r->width_hi_m);

@@ -165,6 +165,13 @@ static void outside_the_record_is_named_and_flagged(void **state)
     assert_int_equal(mw_evaluate(&plan, &inside, false, &a, NULL), MW_OK);
     assert_int_equal(mw_evaluate(&plan, &out, false, &b, NULL), MW_OUTSIDE_CHECKED);
     assert_true(b.pool.width_m > 0);
+    /* Less sure, but of the same verdict. */
+    mw_judgement sure = b.judgement;
+    mw_judge_with_doubt(&sure, 1);
+    assert_int_equal(sure.verdict, b.judgement.verdict);
+    CHECK_NEAR(b.judgement.p_nominal + b.judgement.p_lack_of_fusion + b.judgement.p_keyhole, 1, 1e-15);
+    assert_true(fmax(b.judgement.p_nominal, fmax(b.judgement.p_lack_of_fusion, b.judgement.p_keyhole)) <
+                fmax(sure.p_nominal, fmax(sure.p_lack_of_fusion, sure.p_keyhole)));
     /* Wider where there is no record: by the ratio of the ends. */
     assert_true(b.width_hi_m / b.width_lo_m > a.width_hi_m / a.width_lo_m);
 }
