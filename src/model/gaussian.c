@@ -19,9 +19,9 @@ static const double NO_DEPTH = 1e-25;
 static const double NOWHERE = 1e100;
 
 /* ln(B I) carries a rounding error of some 1e-15, a share of ln s: sizes are known to that share and no better. Newton doubles
- * the digits, so a change of 1e-9 is the last that matters. A pool with ln s below 1e-12 is smaller than 2e-6 sigma, less than an
+ * the digits, so a change of 2e-8 is the last that matters. A pool with ln s below 1e-12 is smaller than 2e-6 sigma, less than an
  * atom's width for any beam in use, and B itself is hardly known to that: it counts as none. */
-static const double SETTLED = 1e-9, ROUNDING = 2e-14, LEAST_EXCESS = 1e-12;
+static const double SETTLED = 2e-8, ROUNDING = 2e-14, LEAST_EXCESS = 1e-12;
 
 static const mw_pool no_pool = {NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN, NAN};
 
@@ -80,14 +80,17 @@ double mw_gaussian_peak(double peclet, double *at_x)
             low = x; /* I still rises forward */
         else
             high = x;
-        double next = x + m.g / (m.gg - m.s - m.g * m.g);
+        const double curvature = m.gg - m.s - m.g * m.g, step = m.g / curvature;
+        double next = x + step;
+        if (fabs(step) < 1e-5) { /* the rest is known to third order: below 1e-15 */
+            x = next;
+            m.log_i += step * (-m.g + step * curvature / 2);
+            break;
+        }
         if (!(next > low && next < high))
             next = (low + high) / 2;
-        const double change = fabs(next - x);
         x = next;
         mw_gaussian_surface(x, 0, p, &m);
-        if (change < 1e-10)
-            break; /* quadratic: the error left is below 1e-18 */
     }
     if (at_x != NULL)
         *at_x = x;
@@ -127,17 +130,16 @@ static bool find_tip(const problem *q, double side, double guess, double *tip)
             inside = d;
         else
             outside = d;
-        const double by_d = side * slope; /* df/dd < 0 */
-        double next = side > 0 || d < 1 ? d - f / by_d : d * exp(-f / (by_d * d));
-        const bool newton = next > inside && next < outside;
-        if (!newton)
-            next = isinf(outside) ? 2 * d : (inside + outside) / 2;
-        const double change = fabs(next - d);
-        d = next;
-        if (change <= (newton ? q->settled : 2e-16) * d) {
-            *tip = q->peak_at + side * d;
+        const double by_d = side * slope, step = -f / by_d; /* df/dd < 0 */
+        double next = side > 0 || d < 1 ? d + step : d * exp(step / d);
+        /* So short a step is the end of it, also where rounding puts it just outside the bracket. */
+        if (fabs(step) <= q->settled * d) {
+            *tip = q->peak_at + side * next;
             return true;
         }
+        if (!(next > inside && next < outside))
+            next = isinf(outside) ? 2 * d : (inside + outside) / 2;
+        d = next;
     }
     *tip = q->peak_at + side * d;
     return fabs(outside - inside) <= fmax(1e-12, q->settled) * d;
@@ -179,12 +181,13 @@ static double edge_at(const outline *o, double x, double guess, double tolerance
         else
             high = r;
         double next = r - f / by_r;
+        if (fabs(next - r) < fmax(tolerance, o->of->settled) * r) {
+            r = next;
+            break;
+        }
         if (!(next > low && next < high))
             next = isinf(high) ? 2 * r : (low + high) / 2;
-        const double change = fabs(next - r);
         r = next;
-        if (change < fmax(tolerance, o->of->settled) * r)
-            break;
     }
     if (slope != NULL) {
         (void)excess(o, x, r, &m);
@@ -212,7 +215,7 @@ static bool polish(const outline *o, double *x, double *r)
         pr -= damp * dr;
         if (!(px > o->of->back && px < o->of->front && pr > 0))
             return false;
-        if (fabs(dr) < o->of->settled * pr && fabs(dx) < 1e-7 * (1 + fabs(px))) {
+        if (fabs(dr) < o->of->settled * pr && fabs(dx) < 1e-6 * (1 + fabs(px))) {
             *x = px;
             *r = pr;
             return c > 0; /* I_XX < 0: a maximum of I over x, so of the outline */
@@ -296,6 +299,16 @@ static bool rear_guess(const problem *q, double *x, double *r)
 /* Above this Peclet number the outline of a pool can have two widest places: under the beam and far behind. */
 static const double two_maxima_from = 2.5;
 
+/* How far ln s stands above the curve on which both are equally wide (fitted to the jump of the widest place; within 0.03). */
+static double beyond_switch(const problem *q)
+{
+    const double y = log(q->p);
+    return q->log_s - (1.622 + 0.674 * y + 0.002 * y * y);
+}
+
+/* Farther than this from the curve, only the wider of the two is looked for. */
+static const double clear_of_switch = 0.12;
+
 /* From a start near a maximum to that maximum. */
 static bool climb(const outline *o, double *x, double *r)
 {
@@ -320,7 +333,18 @@ static bool find_extreme(const outline *o, double *at, double *extreme)
         return true;
     }
     double rear_x, rear_r, beam_x = q->peak_at - fmin(0.4, 0.3 * span), beam_r = 0;
+    const double side = beyond_switch(q);
+    if (side > clear_of_switch && rear_guess(q, &rear_x, &rear_r) && rear_x > q->back && climb(o, &rear_x, &rear_r)) {
+        *at = rear_x;
+        *extreme = rear_r;
+        return true;
+    }
     const bool beam = climb(o, &beam_x, &beam_r);
+    if (beam && side < -clear_of_switch) {
+        *at = beam_x;
+        *extreme = beam_r;
+        return true;
+    }
     const bool two = rear_guess(q, &rear_x, &rear_r) && rear_x > q->back;
     if (!two && beam) {
         *at = beam_x;

@@ -46,12 +46,12 @@ static int node_count(double range, double widest, int least)
     return LANES * (int)groups; /* fmax drops a NaN */
 }
 
-/* e^(from + i h) for the first LANES nodes, and e^(LANES h): the others follow by multiplication. The growth is taken by exp
+/* from e^(i h) for the first LANES nodes, and e^(LANES h): the others follow by multiplication. The growth is taken by exp
  * itself, since an error in it acts like an error in the step. */
 static double first_nodes(double from, double step, double e[LANES])
 {
     const double grow = exp(step);
-    e[0] = exp(from);
+    e[0] = from;
     for (int i = 1; i < LANES; i++)
         e[i] = e[i - 1] * grow;
     return exp(LANES * step);
@@ -87,18 +87,24 @@ static double far_end(double a2, double p)
 MW_WIDE static void surface_nodes(double x, double y2, double p, double floor_exponent, double first, int nodes, double e[LANES],
                                   double grow, strands *a)
 {
+    /* e^-u goes along by multiplication too: a division is what costs most here. */
+    double inv[LANES];
+    const double shrink = 1 / grow;
+    for (int l = 0; l < LANES; l++)
+        inv[l] = 1 / e[l];
     for (int i = 0; i < nodes; i += LANES) {
 #pragma omp simd
         for (int l = 0; l < LANES; l++) {
-            const double inv = 1 / e[l], cosh_u = 0.5 * (e[l] + inv), sinh_u = 0.5 * (e[l] - inv);
+            const double cosh_u = 0.5 * (e[l] + inv[l]), sinh_u = 0.5 * (e[l] - inv[l]);
             const double w2 = sinh_u * sinh_u, s = 1 / (cosh_u * cosh_u), reach = x + p * w2, g = reach * s;
-            const double weight = exp(floor_exponent - 0.5 * (reach * reach + y2) * s) / cosh_u * (i + l == 0 ? first : 1);
+            const double weight = exp(floor_exponent - 0.5 * (reach * reach + y2) * s) * (cosh_u * s) * (i + l == 0 ? first : 1);
             a->one[l] += weight;
             a->g[l] += weight * g;
             a->gg[l] += weight * g * g;
             a->s[l] += weight * s;
             a->gt[l] += weight * g * s;
             e[l] *= grow;
+            inv[l] *= shrink;
         }
     }
     for (int l = 0; l < LANES; l++)
@@ -109,10 +115,14 @@ MW_WIDE static void surface_nodes(double x, double y2, double p, double floor_ex
 MW_WIDE static void below_nodes(double x, double z2, double p, double floor_exponent, int nodes, double w[LANES], double grow,
                                 strands *a)
 {
+    double inv[LANES]; /* 1/w^2, by multiplication */
+    const double shrink = 1 / (grow * grow);
+    for (int l = 0; l < LANES; l++)
+        inv[l] = 1 / (w[l] * w[l]);
     for (int i = 0; i < nodes; i += LANES) {
 #pragma omp simd
         for (int l = 0; l < LANES; l++) {
-            const double w2 = w[l] * w[l], s = 1 / (1 + w2), t = 1 / w2, reach = x + p * w2, g = reach * s;
+            const double w2 = w[l] * w[l], s = 1 / (1 + w2), t = inv[l], reach = x + p * w2, g = reach * s;
             const double weight = exp(floor_exponent - 0.5 * (reach * reach * s + z2 * t)) * w[l] * s;
             a->one[l] += weight;
             a->g[l] += weight * g;
@@ -121,6 +131,7 @@ MW_WIDE static void below_nodes(double x, double z2, double p, double floor_expo
             a->t[l] += weight * t;
             a->gt[l] += weight * g * t;
             w[l] *= grow;
+            inv[l] *= shrink;
         }
     }
 }
@@ -131,9 +142,10 @@ void mw_gaussian_surface(double x, double y2, double peclet, mw_moments *out)
     /* Floor and near end in S. */
     const double best = fmax(1, a / p), root = sqrt(2 * CUT + 4 * p * a), near = 2 * a / (root + sqrt(2 * CUT));
     const double low = a > p ? fmax(1, near * near) : 1, high = far_end(a2, p);
-    const double from = low > 1 ? acosh(sqrt(low)) : 0, to = acosh(sqrt(high));
-    const int nodes = node_count(to - from, STRIP_STEP, SURFACE_NODES);
-    const double step = (to - from) / (nodes - 1);
+    /* e^u at both ends: S = cosh^2 u. */
+    const double from = sqrt(low) + sqrt(low - 1), range = log((sqrt(high) + sqrt(fmax(0, high - 1))) / from);
+    const int nodes = node_count(range, STRIP_STEP, SURFACE_NODES);
+    const double step = range / (nodes - 1);
     const double at_best = x + p * (best - 1), floor_exponent = (at_best * at_best + y2) / (2 * best);
     double e[LANES];
     const double grow = first_nodes(from, step, e);
@@ -173,9 +185,9 @@ void mw_gaussian_below(double x, double z, double peclet, mw_moments *out)
     const double p = peclet, z2 = z * z;
     double low, high, best;
     valley_below(x, z2, p, &low, &high, &best);
-    const double from = 0.5 * log(low), to = 0.5 * log(high);
-    const int nodes = node_count(to - from, widest_step(x, p), BELOW_NODES);
-    const double step = (to - from) / (nodes - 1);
+    const double from = sqrt(low), range = 0.5 * log(high / low);
+    const int nodes = node_count(range, widest_step(x, p), BELOW_NODES);
+    const double step = range / (nodes - 1);
     const double at_best = x + p * best, floor_exponent = at_best * at_best / (2 * (1 + best)) + z2 / (2 * best);
     double w[LANES];
     const double grow = first_nodes(from, step, w);
