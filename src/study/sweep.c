@@ -1,6 +1,6 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
- * A grid over power, speed, hatch and layer. Tracks are computed once a (power, speed), on all cores; edges of the window once a
- * line of them; each cell is then a handful of closed forms. */
+ * A grid over power, speed, hatch and layer, in blocks that are handed on as they are done, so that memory does not grow with the grid. Tracks are
+ * computed once a (power, speed), on all cores; edges of the window once a line of them; each cell is then a handful of closed forms. */
 #include <math.h>
 #include <stdlib.h>
 
@@ -15,9 +15,16 @@ typedef struct sweep {
     const mw_plan *plan;
     mw_grid grid;
     int threads;
-    mw_track *track;                  /* n_power x n_speed, speed fastest */
-    mw_edges *along_power, *along_speed; /* [line][hatch][layer]; line = speed index, power index */
+    bool margins, by_table;
+    size_t first_power, n_power, first_speed, n_speed; /* the present block */
+    size_t most_power, most_speed;                     /* of any block */
+    mw_track *track;       /* of the block, speed fastest */
+    mw_edges *along_power; /* [speed][hatch][layer] of the whole grid; NULL: too many, each margin is searched on its own */
+    mw_edges *along_speed; /* [power of the block][hatch][layer] */
 } sweep;
+
+/* (power, speed) in a block: some 10 MB of tracks. And the most edges along power that are kept: some 80 MB. */
+enum { MOST_BLOCK_TRACKS = 1 << 15, MOST_KEPT_EDGES = 1 << 20 };
 
 static int thread_number(void)
 {
@@ -71,38 +78,43 @@ mw_status mw_grid_check(const mw_grid *g, mw_error *err)
 static mw_status compute_by_table(sweep *s)
 {
     const mw_grid *g = &s->grid;
-    mw_track *line = malloc((size_t)s->threads * g->n_power * sizeof *line);
+    mw_track *line = malloc((size_t)s->threads * s->n_power * sizeof *line);
     if (line == NULL)
         return MW_NO_MEMORY;
     int failed = 0;
 #pragma omp parallel for schedule(dynamic, 1) num_threads(s->threads) reduction(| : failed)
-    for (long iv = 0; iv < (long)g->n_speed; iv++) {
-        mw_track *mine = line + (size_t)thread_number() * g->n_power;
-        failed |= mw_quick_tracks(s->plan, g->speed_m_per_s[iv], g->d4sigma_m, g->power_W, g->n_power, mine) != MW_OK;
-        for (size_t i = 0; i < g->n_power; i++)
-            s->track[i * g->n_speed + (size_t)iv] = mine[i];
+    for (long iv = 0; iv < (long)s->n_speed; iv++) {
+        mw_track *mine = line + (size_t)thread_number() * s->n_power;
+        failed |= mw_quick_tracks(s->plan, g->speed_m_per_s[s->first_speed + (size_t)iv], g->d4sigma_m, g->power_W + s->first_power, s->n_power, mine) != MW_OK;
+        for (size_t i = 0; i < s->n_power; i++)
+            s->track[i * s->n_speed + (size_t)iv] = mine[i];
     }
     free(line);
     return failed ? MW_NO_CONVERGENCE : MW_OK;
 }
 
-static void compute_tracks(sweep *s)
+static mw_status compute_tracks(sweep *s)
 {
     const mw_grid *g = &s->grid;
-    const long n = (long)(g->n_power * g->n_speed);
+    const long n = (long)(s->n_power * s->n_speed);
+    if (s->by_table)
+        return compute_by_table(s);
 #pragma omp parallel for schedule(dynamic, 16) num_threads(s->threads)
     for (long i = 0; i < n; i++)
-        (void)mw_track_at(s->plan, g->power_W[(size_t)i / g->n_speed], g->speed_m_per_s[(size_t)i % g->n_speed], g->d4sigma_m, &s->track[i]);
+        (void)mw_track_at(s->plan, g->power_W[s->first_power + (size_t)i / s->n_speed], g->speed_m_per_s[s->first_speed + (size_t)i % s->n_speed], g->d4sigma_m,
+                          &s->track[i]);
+    return MW_OK;
 }
 
-/* Edges of all lines along one factor, for every hatch and layer. */
+/* Edges of lines along one factor, for every hatch and layer: along power at all speeds, along speed at the powers of the block. The places of a line
+ * span the whole axis, whatever the block. */
 static mw_status compute_edges(sweep *s, mw_factor factor, mw_edges *edges, mw_error *err)
 {
     const mw_grid *g = &s->grid;
     const bool power = factor == MW_ALONG_POWER;
-    const double *own = power ? g->power_W : g->speed_m_per_s, *other = power ? g->speed_m_per_s : g->power_W;
+    const double *own = power ? g->power_W : g->speed_m_per_s, *other = power ? g->speed_m_per_s : g->power_W + s->first_power;
     const size_t n_own = power ? g->n_power : g->n_speed, n_pairs = g->n_hatch * g->n_layer;
-    const long n_line = (long)(power ? g->n_speed : g->n_power);
+    const long n_line = (long)(power ? g->n_speed : s->n_power);
     const size_t n = mw_line_values(own, n_own, NULL);
     double *at = malloc(n * sizeof *at);
     mw_track *track = malloc(n * (size_t)s->threads * sizeof *track);
@@ -156,14 +168,17 @@ static mw_status margin_on(const sweep *s, const mw_edges *edges, const mw_resul
     return status;
 }
 
+/* ip counts from the block's first power, iv from the grid's first speed. */
 static mw_status add_margins(const sweep *s, size_t ip, size_t iv, size_t pair, mw_result *r)
 {
     const size_t n_pairs = s->grid.n_hatch * s->grid.n_layer;
-    if (s->along_power == NULL || !r->judged)
+    if (!s->margins || !r->judged)
         return MW_OK;
     r->margins = (mw_margins){0, 0, 0, 0};
     if (r->judgement.verdict != MW_NOMINAL)
         return MW_OK;
+    if (s->along_power == NULL)
+        return mw_margins_at(s->plan, r, &r->margins);
     const mw_status status = margin_on(s, &s->along_power[iv * n_pairs + pair], r, MW_ALONG_POWER, &r->margins.power_down_pct, &r->margins.power_up_pct);
     return status != MW_OK ? status
                            : margin_on(s, &s->along_speed[ip * n_pairs + pair], r, MW_ALONG_SPEED, &r->margins.speed_down_pct, &r->margins.speed_up_pct);
@@ -173,15 +188,19 @@ static mw_status write_cells(const sweep *s, mw_result_sink sink, void *to)
 {
     const mw_grid *g = &s->grid;
     const size_t n_pairs = g->n_hatch * g->n_layer;
-    for (size_t c = g->first_cell; c < g->first_cell + g->n_cell; c++) {
-        const size_t track = c / n_pairs, pair = c % n_pairs;
-        mw_result r;
-        mw_result_at(s->plan, &s->track[track], g->hatch_m[pair / g->n_layer], g->layer_m[pair % g->n_layer], &r);
-        mw_status status = add_margins(s, track / g->n_speed, track % g->n_speed, pair, &r);
-        if (status == MW_OK)
-            status = sink(to, &r);
-        if (status != MW_OK)
-            return status;
+    for (size_t i = 0; i < s->n_power * s->n_speed; i++) {
+        const size_t ip = i / s->n_speed, iv = s->first_speed + i % s->n_speed, first = ((s->first_power + ip) * g->n_speed + iv) * n_pairs;
+        for (size_t pair = 0; pair < n_pairs; pair++) {
+            if (first + pair < g->first_cell || first + pair >= g->first_cell + g->n_cell)
+                continue;
+            mw_result r;
+            mw_result_at(s->plan, &s->track[i], g->hatch_m[pair / g->n_layer], g->layer_m[pair % g->n_layer], &r);
+            mw_status status = add_margins(s, ip, iv, pair, &r);
+            if (status == MW_OK)
+                status = sink(to, &r);
+            if (status != MW_OK)
+                return status;
+        }
     }
     return MW_OK;
 }
@@ -203,10 +222,40 @@ mw_status mw_grid_cut(mw_grid *g, mw_error *err)
     return MW_OK;
 }
 
+/* Memory of a block, and the edges along power for the whole grid where they are not too many. */
+static mw_status prepare(sweep *s, mw_error *err)
+{
+    const mw_grid *g = &s->grid;
+    const size_t n_pairs = g->n_hatch * g->n_layer;
+    s->most_speed = g->n_speed < MOST_BLOCK_TRACKS ? g->n_speed : MOST_BLOCK_TRACKS;
+    s->most_power = MOST_BLOCK_TRACKS / s->most_speed < g->n_power ? MOST_BLOCK_TRACKS / s->most_speed : g->n_power;
+    if (s->most_power * n_pairs > MOST_KEPT_EDGES)
+        s->most_power = MOST_KEPT_EDGES / n_pairs > 0 ? MOST_KEPT_EDGES / n_pairs : 1;
+    const bool lines = s->margins && n_pairs <= MOST_KEPT_EDGES / g->n_speed;
+    s->track = malloc(s->most_power * s->most_speed * sizeof *s->track);
+    if (lines) {
+        s->along_power = calloc(g->n_speed * n_pairs, sizeof *s->along_power);
+        s->along_speed = calloc(s->most_power * n_pairs, sizeof *s->along_speed);
+    }
+    if (s->track == NULL || (lines && (s->along_power == NULL || s->along_speed == NULL)))
+        return mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory");
+    return lines ? compute_edges(s, MW_ALONG_POWER, s->along_power, err) : MW_OK;
+}
+
+static mw_status run_block(sweep *s, mw_result_sink sink, void *to, mw_error *err)
+{
+    mw_status status = compute_tracks(s);
+    if (status != MW_OK)
+        return mw_fail(err, status, NULL, 0, "%s", mw_status_sentence(status));
+    if (s->along_speed != NULL && s->first_speed == 0) /* the same for every part of a row of speeds */
+        status = compute_edges(s, MW_ALONG_SPEED, s->along_speed, err);
+    return status == MW_OK ? write_cells(s, sink, to) : status;
+}
+
 static mw_status run(const mw_plan *plan, const mw_grid *grid, bool with_margins, bool by_table, int threads, mw_result_sink sink, void *to, mw_error *err)
 {
     static const double single_track = NAN, bare_plate = 0;
-    sweep s = {.plan = plan, .grid = *grid, .threads = threads};
+    sweep s = {.plan = plan, .grid = *grid, .threads = threads, .margins = with_margins && grid->n_hatch > 0 && grid->n_layer > 0, .by_table = by_table};
     if (s.grid.n_hatch == 0) {
         s.grid.hatch_m = &single_track;
         s.grid.n_hatch = 1;
@@ -224,32 +273,14 @@ static mw_status run(const mw_plan *plan, const mw_grid *grid, bool with_margins
     mw_status status = mw_grid_check(&s.grid, err);
     if (status == MW_OK)
         status = mw_grid_cut(&s.grid, err);
-    if (status != MW_OK)
-        return status;
-    const size_t n_pairs = s.grid.n_hatch * s.grid.n_layer;
-    const bool margins = with_margins && grid->n_hatch > 0 && grid->n_layer > 0;
-    s.track = malloc(s.grid.n_power * s.grid.n_speed * sizeof *s.track);
-    if (margins) {
-        s.along_power = calloc(s.grid.n_speed * n_pairs, sizeof *s.along_power);
-        s.along_speed = calloc(s.grid.n_power * n_pairs, sizeof *s.along_speed);
-    }
-    if (s.track == NULL || (margins && (s.along_power == NULL || s.along_speed == NULL))) {
-        status = mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory");
-        goto done;
-    }
-    if (by_table)
-        status = compute_by_table(&s);
-    else
-        compute_tracks(&s);
-    if (status != MW_OK)
-        (void)mw_fail(err, status, NULL, 0, "%s", mw_status_sentence(status));
-    if (status == MW_OK && margins)
-        status = compute_edges(&s, MW_ALONG_POWER, s.along_power, err);
-    if (status == MW_OK && margins)
-        status = compute_edges(&s, MW_ALONG_SPEED, s.along_speed, err);
     if (status == MW_OK)
-        status = write_cells(&s, sink, to);
-done:
+        status = prepare(&s, err);
+    for (s.first_power = 0; status == MW_OK && s.first_power < s.grid.n_power; s.first_power += s.most_power)
+        for (s.first_speed = 0; status == MW_OK && s.first_speed < s.grid.n_speed; s.first_speed += s.most_speed) {
+            s.n_power = s.grid.n_power - s.first_power < s.most_power ? s.grid.n_power - s.first_power : s.most_power;
+            s.n_speed = s.grid.n_speed - s.first_speed < s.most_speed ? s.grid.n_speed - s.first_speed : s.most_speed;
+            status = run_block(&s, sink, to, err);
+        }
     free(s.along_speed);
     free(s.along_power);
     free(s.track);

@@ -235,6 +235,62 @@ static void a_sweep_by_table_is_the_sweep(void **state)
     assert_int_equal(b.compared, CELLS);
 }
 
+/* Grids of more than one block: cells come in order, and those of a part of it, computed alone, are the same to the last bit. */
+typedef struct order {
+    const mw_grid *grid;
+    size_t n;
+    mw_result kept; /* of cell `keep` */
+    size_t keep;
+} order;
+
+static mw_status check_order(void *to, const mw_result *r)
+{
+    order *o = to;
+    const mw_grid *g = o->grid;
+    const size_t n_pairs = g->n_hatch * g->n_layer, track = o->n / n_pairs, pair = o->n % n_pairs;
+    if (r->setting.power_W != g->power_W[track / g->n_speed] || r->setting.speed_m_per_s != g->speed_m_per_s[track % g->n_speed] ||
+        r->setting.hatch_m != g->hatch_m[pair / g->n_layer] || r->setting.layer_m != g->layer_m[pair % g->n_layer] || !(r->pool.width_m > 0))
+        fail_msg("cell %zu is out of order or empty", o->n);
+    if (o->n == o->keep)
+        o->kept = *r;
+    o->n++;
+    return MW_OK;
+}
+
+static mw_status take_one(void *to, const mw_result *r)
+{
+    *(mw_result *)to = *r;
+    return MW_OK;
+}
+
+static void large_grids_come_in_order_block_by_block(void **state)
+{
+    (void)state;
+    enum { MANY = 40000 };
+    const struct { size_t n_power, n_speed, keep; } shape[] = {{3, MANY, 3 * MANY * 2 - 1}, {400, 150, 2 * 250 * 150 + 77}, {3, MANY, 2 * MANY + 70001}};
+    double *axis = malloc(MANY * sizeof *axis);
+    assert_non_null(axis);
+    for (size_t k = 0; k < sizeof shape / sizeof *shape; k++) {
+        double power[400];
+        for (size_t i = 0; i < shape[k].n_speed; i++)
+            axis[i] = 0.3 + 0.5 * (double)i / (double)shape[k].n_speed;
+        for (size_t i = 0; i < shape[k].n_power; i++)
+            power[i] = 150 + 200 * (double)i / (double)shape[k].n_power;
+        mw_grid grid = {.power_W = power, .speed_m_per_s = axis, .hatch_m = hatches, .layer_m = layers, .n_power = shape[k].n_power, .n_speed = shape[k].n_speed,
+                        .n_hatch = 2, .n_layer = 1, .d4sigma_m = 80e-6, .preheat_K = 293.15};
+        order o = {.grid = &grid, .keep = shape[k].keep};
+        mw_result alone;
+        mw_error err;
+        assert_int_equal(mw_sweep_by_table(&plan, &grid, 2, check_order, &o, &err), MW_OK);
+        assert_int_equal(o.n, 2 * shape[k].n_power * shape[k].n_speed);
+        grid.first_cell = shape[k].keep;
+        grid.n_cell = 1;
+        assert_int_equal(mw_sweep_by_table(&plan, &grid, 1, take_one, &alone, &err), MW_OK);
+        assert_memory_equal(&alone, &o.kept, sizeof alone);
+    }
+    free(axis);
+}
+
 static mw_status stop_at_five(void *to, const mw_survey_cell *cell)
 {
     (void)cell;
@@ -297,6 +353,7 @@ int main(void)
         cmocka_unit_test(counts_are_the_exact_verdicts),
         cmocka_unit_test(any_thread_count_and_any_part_gives_the_same),
         cmocka_unit_test(a_sweep_by_table_is_the_sweep),
+        cmocka_unit_test(large_grids_come_in_order_block_by_block),
         cmocka_unit_test(misuse_is_answered),
         cmocka_unit_test(draws_have_the_widths_of_the_card),
     };
