@@ -122,7 +122,7 @@ $(B)/gen/gaussian_table_data.h: $(B)/gen/pool_tables
 	$(Q)$< > $@
 
 # The loops over lanes are worth the compiler's full effort.
-LANES := $(B)/src/model/gaussian_table.o $(B)/src/model/keyhole_line.o $(B)/src/study/survey_lanes.o $(B)/src/study/survey.o
+LANES := $(B)/src/model/gaussian_table.o $(B)/src/model/keyhole_line.o $(B)/src/model/rosenthal_line.o $(B)/src/study/survey_lanes.o $(B)/src/study/survey.o
 $(LANES): ALLC += -I$(B)/gen $(if $(COV),,-O3)
 $(B)/src/model/gaussian_table.o: $(B)/gen/gaussian_table_data.h
 

@@ -128,8 +128,8 @@ typedef mw_status (*mw_result_sink)(void *to, const mw_result *result);
  * Errors: MW_BAD_VALUE, MW_TOO_LARGE (with the number of cells and what is allowed), MW_NO_MEMORY, the sink's own. */
 mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, int threads, mw_result_sink sink, void *to, mw_error *err);
 
-/* The same with the default model's pools from tables, within 3e-5 of the exact ones in width, depth and absorptivity: about a thousand times
- * faster, for maps. Lengths, places, gradients, cooling rates and unmelted shares are NaN; no margins. Other models and bare plate are computed exactly. */
+/* The same with the pools from tables, within 3e-5 of the exact ones in width, depth and absorptivity: about a thousand times
+ * faster, for maps. Lengths, places, gradients, cooling rates and unmelted shares are NaN; no margins. Bare plate is computed exactly. */
 mw_status mw_sweep_by_table(const mw_plan *plan, const mw_grid *grid, int threads, mw_result_sink sink, void *to, mw_error *err);
 
 #endif

@@ -19,8 +19,7 @@ void mw_intervals_at(const mw_plan *plan, bool outside, mw_result *result);
 /* Margins of one judged result, by a search of its own. */
 mw_status mw_margins_at(const mw_plan *plan, const mw_result *result, mw_margins *out);
 
-/* Tracks of one speed at several powers: of the default model from the tables (see mw_sweep_by_table; each value the same whatever stands beside it),
- * of the others exact. */
+/* Tracks of one speed at several powers from the tables (see mw_sweep_by_table); each value is the same whatever stands beside it. */
 mw_status mw_quick_tracks(const mw_plan *plan, double speed_m_per_s, double d4sigma_m, const double *power_W, size_t n, mw_track *out);
 
 /* ---- edges along one factor ----

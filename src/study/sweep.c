@@ -295,5 +295,5 @@ mw_status mw_sweep(const mw_plan *plan, const mw_grid *grid, bool with_margins, 
 mw_status mw_sweep_by_table(const mw_plan *plan, const mw_grid *grid, int threads, mw_result_sink sink, void *to, mw_error *err)
 {
     const bool bare = grid->n_layer == 0 || !(grid->layer_m[0] > 0); /* balling on bare plate asks for the length */
-    return run(plan, grid, false, plan->model == MW_MODEL_DEFAULT && !bare, threads, sink, to, err);
+    return run(plan, grid, false, !bare, threads, sink, to, err);
 }

@@ -11,9 +11,11 @@
 
 #include "kernels.h"
 #include "meltwright/gaussian.h"
+#include "meltwright/rosenthal.h"
 #include "meltwright/survey.h"
 #include "model/gaussian_table.h"
 #include "model/keyhole_line.h"
+#include "model/rosenthal_line.h"
 
 enum { ROW = 128, TABLE_ROWS = 400, EXACT_ROWS = 1, ROUNDS = 9 };
 
@@ -104,6 +106,30 @@ static double default_exact(void *v)
             bench_stop_on(mw_keyhole_pool_compute(&in, &mw_keyhole_defaults, &p), NULL);
             w->sink += p.pool.width_m;
         }
+    return (bench_now() - start) / (w->rows * ROW);
+}
+
+static double rosenthal_by_series(void *v)
+{
+    row_work *w = v;
+    double n[ROW], out[ROW];
+    const double start = bench_now();
+    for (int r = 0; r < w->rows; r++) {
+        for (int i = 0; i < ROW; i++)
+            n[i] = 0.01 * speed_of(r) * power_of(i);
+        mw_rosenthal_half_widths(n, ROW, out);
+        w->sink += out[ROW - 1];
+    }
+    return (bench_now() - start) / (w->rows * ROW);
+}
+
+static double rosenthal_by_root(void *v)
+{
+    row_work *w = v;
+    const double start = bench_now();
+    for (int r = 0; r < w->rows; r++)
+        for (int i = 0; i < ROW; i++)
+            w->sink += mw_rosenthal_half_width(0.01 * speed_of(r) * power_of(i));
     return (bench_now() - start) / (w->rows * ROW);
 }
 
@@ -261,6 +287,7 @@ void bench_tables(bench *b)
     bench_heading("Pools of a sweep, rows of 128 powers, one thread", "table", "exact", "times");
     compare_rows("Gaussian pool: width, depth, length", gaussian_by_table, gaussian_exact, &plan, "within 1e-5 (unit tests)");
     compare_rows("default pool: width, depth, conduction width", default_by_table, default_exact, &plan, "within 3e-5 (unit tests)");
+    compare_rows("Rosenthal: half width", rosenthal_by_series, rosenthal_by_root, &plan, "within 5e-8 (unit tests)");
     window(b, &plan);
     agreement(b, &plan);
     mw_alloy_free(alloy);

@@ -13,6 +13,7 @@
 #include <string.h>
 
 #include "meltwright/rosenthal.h"
+#include "model/rosenthal_line.h"
 
 static const double pi = 3.14159265358979323846;
 
@@ -479,10 +480,29 @@ static void far_behind_no_digits_are_lost(void **state)
     CHECK_REL(g[1], -rise * 60e-6 * 1e9, 1e-8);
 }
 
+/* Within the stated 5e-8 of the root over fourteen decades, and in both limits: n for small n, sqrt(2 n/e) for large n. */
+static void half_widths_at_once_follow_the_root(void **state)
+{
+    (void)state;
+    enum { COUNT = 1401 };
+    static double n[COUNT], out[COUNT];
+    for (int i = 0; i < COUNT; i++)
+        n[i] = pow(10, -7 + i / 100.0);
+    mw_rosenthal_half_widths(n, COUNT, out);
+    for (int i = 0; i < COUNT; i++)
+        CHECK_REL(out[i], mw_rosenthal_half_width(n[i]), 5e-8);
+    double alone;
+    mw_rosenthal_half_widths(&n[77], 1, &alone);
+    assert_true(alone == out[77]);
+    CHECK_REL(out[0], n[0], 1e-6);
+    CHECK_REL(out[COUNT - 1], sqrt(2 * n[COUNT - 1] / exp(1)), 1e-3);
+}
+
 int main(void)
 {
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
+        cmocka_unit_test(half_widths_at_once_follow_the_root),
         cmocka_unit_test(every_reference_pool_is_met),
         cmocka_unit_test(every_reference_temperature_is_met),
         cmocka_unit_test(the_dimensionless_table_is_met),

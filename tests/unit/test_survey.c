@@ -216,6 +216,11 @@ static mw_status compare_result(void *to, const mw_result *exact)
     CHECK_REL(r->pool.width_m, exact->pool.width_m, 3e-5);
     CHECK_REL(r->pool.depth_m, exact->pool.depth_m, 3e-5);
     CHECK_REL(r->absorptivity, exact->absorptivity, 3e-5);
+    if (isnan(exact->onset_index)) { /* a conduction model: Rosenthal's has no peak */
+        assert_true(isnan(r->onset_index) && isnan(r->conduction.peak_temperature_K) == isnan(exact->conduction.peak_temperature_K));
+        CHECK_NEAR(r->judgement.p_nominal, exact->judgement.p_nominal, 2e-4);
+        return MW_OK;
+    }
     CHECK_NEAR(r->cavity_depth_m, exact->cavity_depth_m, 3e-5 * exact->cavity_depth_m);
     CHECK_REL(r->balling_index, exact->balling_index, 3e-5);
     CHECK_REL(r->conduction.peak_temperature_K, exact->conduction.peak_temperature_K, 1e-9);
@@ -230,9 +235,14 @@ static void a_sweep_by_table_is_the_sweep(void **state)
     static both b;
     mw_error err;
     const mw_grid grid = small_grid();
-    assert_int_equal(mw_sweep_by_table(&plan, &grid, 2, keep_result, &b, &err), MW_OK);
-    assert_int_equal(mw_sweep(&plan, &grid, false, 2, compare_result, &b, &err), MW_OK);
-    assert_int_equal(b.compared, CELLS);
+    for (int model = 0; model < MW_MODEL_COUNT; model++) {
+        mw_plan p;
+        assert_int_equal(mw_plan_make(steel, (mw_model)model, NULL, 293.15, &p, &err), MW_OK);
+        b.n = b.compared = 0;
+        assert_int_equal(mw_sweep_by_table(&p, &grid, 2, keep_result, &b, &err), MW_OK);
+        assert_int_equal(mw_sweep(&p, &grid, false, 2, compare_result, &b, &err), MW_OK);
+        assert_int_equal(b.compared, CELLS);
+    }
 }
 
 /* Grids of more than one block: cells come in order, and those of a part of it, computed alone, are the same to the last bit. */
