@@ -1,7 +1,9 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * sweep --samples: how often each verdict comes up under doubt, for every cell of the grid. */
+#include <errno.h>
 #include <math.h>
 #include <stdlib.h>
+#include <string.h>
 
 #include "cli/common.h"
 #include "cli/grid.h"
@@ -88,7 +90,7 @@ static mw_status put_survey_cell(void *to, const mw_survey_cell *cell)
     s->nominal += v[9];
     s->keyhole += v[11];
     s->balling += v[12];
-    return ferror(s->to) ? mw_fail(s->err, MW_CANNOT_WRITE, s->path, 0, "writing failed") : MW_OK;
+    return ferror(s->to) ? mw_fail(s->err, MW_CANNOT_WRITE, s->path, 0, "writing failed: %s", strerror(errno)) : MW_OK;
 }
 
 static mw_status read_whole(const arguments *args, option_id id, double least, double most, double *value, mw_error *err)

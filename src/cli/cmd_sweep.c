@@ -1,7 +1,9 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * sweep: the full table over power x speed x hatch x layer. */
+#include <errno.h>
 #include <math.h>
 #include <stdlib.h>
+#include <string.h>
 
 #include "cli/common.h"
 #include "cli/grid.h"
@@ -107,7 +109,7 @@ static mw_status put_row(void *to, const mw_result *r)
     s->n++;
     s->by_verdict[r->judgement.verdict] += r->judged;
     s->warned += r->status > 0;
-    return ferror(s->to) ? mw_fail(s->err, MW_CANNOT_WRITE, s->path, 0, "writing failed") : MW_OK;
+    return ferror(s->to) ? mw_fail(s->err, MW_CANNOT_WRITE, s->path, 0, "writing failed: %s", strerror(errno)) : MW_OK;
 }
 
 static mw_status write_sweep(const arguments *args, const mw_plan *plan, const mw_grid *grid, int threads, output_format format, const shard *part,

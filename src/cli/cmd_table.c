@@ -3,6 +3,7 @@
  * next is read. The input's columns come first, as they were given; a result whose
  * name the input already uses for something of its own is called NAME_predicted. */
 #include <stdint.h>
+#include <errno.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -235,7 +236,7 @@ static mw_status run_rows(table_run *t, mw_error *err)
         if (status != MW_OK)
             return status;
         if (ferror(t->out.to))
-            return mw_fail(err, MW_CANNOT_WRITE, t->out.path, 0, "writing failed");
+            return mw_fail(err, MW_CANNOT_WRITE, t->out.path, 0, "writing failed: %s", strerror(errno));
     }
     return MW_OK;
 }

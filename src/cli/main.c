@@ -90,7 +90,8 @@ int main(int argc, char **argv)
     errno = 0;
     const int lost = ferror(stdout) | fflush(stdout);
     if (lost != 0 || fclose(stdout) != 0) {
-        (void)fprintf(stderr, "meltwright: standard output could not be written: %s\n", errno != 0 ? strerror(errno) : "closed or full");
+        if (code != EXIT_NOT_WRITTEN) /* else it has been said */
+            (void)fprintf(stderr, "meltwright: standard output could not be written: %s\n", errno != 0 ? strerror(errno) : "closed or full");
         return EXIT_NOT_WRITTEN;
     }
     return code;
