@@ -29,6 +29,9 @@ typedef struct mw_overrides {
 } mw_overrides;
 extern const mw_overrides mw_no_overrides;
 
+/* Standard uncertainty of the beam diameter of published tracks, percent: inside the intervals' residuals, and what is taken when none is given. */
+#define MW_BEAM_UNCERTAINTY_USUAL_PCT 20.0
+
 /* Everything that depends on alloy, model, overrides and preheat alone. Plain data; copy freely. Borrowed: alloy. */
 typedef struct mw_plan {
     const mw_alloy *alloy; /* NULL for a check case */

@@ -104,6 +104,9 @@ static mw_status read_whole(const arguments *args, option_id id, double least, d
 mw_status write_survey(const arguments *args, const mw_plan *plan, const mw_grid *grid, int threads, output_format format, const shard *part, mw_error *err)
 {
     double n = 0, seed = 1;
+    mw_plan doubtful = *plan;
+    if (!given(args, OPT_BEAM_DOUBT))
+        doubtful.beam_uncertainty_pct = MW_BEAM_UNCERTAINTY_USUAL_PCT;
     output out;
     mw_status status = read_whole(args, OPT_SAMPLES, 1, MW_MOST_SAMPLES, &n, err);
     if (status == MW_OK)
@@ -112,7 +115,7 @@ mw_status write_survey(const arguments *args, const mw_plan *plan, const mw_grid
     if (status == MW_OK && sample == NULL)
         status = mw_fail(err, MW_NO_MEMORY, NULL, 0, "out of memory");
     if (status == MW_OK)
-        status = mw_samples_draw(plan, (size_t)n, (unsigned long)seed, sample, err);
+        status = mw_samples_draw(&doubtful, (size_t)n, (unsigned long)seed, sample, err);
     if (status == MW_OK)
         status = open_output(args, &out, err);
     if (status != MW_OK) {

@@ -31,7 +31,7 @@ static const char *const sweep_about[] = {
     "Each of power, speed, hatch and layer is one value, a list, or a range START:STOP:COUNT. Rows: power slowest, layer fastest.\n"
     "Pools are computed once a power and speed, so hatch and layer cost almost nothing. The table is written as it is computed.\n"
     "With --samples coupling, onset, conductivity, heat, solidus, boiling and beam are drawn from their standard uncertainties (the card's, and\n"
-    "--beam-uncertainty), and the table holds the share of samples with each verdict: doubt in the inputs, beside the verdict's own odds.",
+    "--beam-uncertainty, the leading one: measure the beam), and the table holds the share of samples with each verdict: doubt in the inputs, beside the verdict's own odds.",
     NULL};
 static const char *const sweep_example[] = {
     "meltwright sweep --alloy 316L --d4sigma 80 --power 150:300:4 --speed 600:1200:4 --hatch 90,110 --layer 30,40 --format text",

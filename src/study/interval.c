@@ -17,8 +17,6 @@ static const double residual_length = 0.20; /* ten settings of one institution o
 
 /* Cards fitted on tracks state 10 % for the coupling, and that is inside the residuals; what a card states beyond it is added. */
 static const double coupling_inside_pct = 10;
-/* The usual doubt about a published beam that is inside the residuals: what brings the depths of whole papers onto one curve. */
-static const double beam_inside_pct = 20;
 
 /* What `pct` has beyond what the residuals hold, as a sd of the logarithm. */
 static double beyond(double pct, double inside_pct)
@@ -42,8 +40,9 @@ void mw_intervals_at(const mw_plan *plan, bool outside, mw_result *r)
     size_t class = 0;
     while (!(r->onset_index < residual[class].below_onset_index) && !isinf(residual[class].below_onset_index))
         class++;
+    /* The usual doubt about a published beam is inside the residuals: it is what brings the depths of whole papers onto one curve. */
     const double coupling = beyond(plan->alloy->property[MW_PROP_COUPLING].uncertainty_pct, coupling_inside_pct);
-    const double beam = beyond(plan->beam_uncertainty_pct, beam_inside_pct);
+    const double beam = beyond(plan->beam_uncertainty_pct, MW_BEAM_UNCERTAINTY_USUAL_PCT);
     const double widen = outside ? MW_OUTSIDE_DOUBT : 1;
     const double width = hypot(residual[class].width_coupling * coupling, residual[class].width_beam * beam);
     const double depth = hypot(residual[class].depth_coupling * coupling, residual[class].depth_beam * beam);
