@@ -8,6 +8,7 @@
 #include "meltwright/gaussian.h"
 #include "meltwright/keyhole.h"
 #include "model/gaussian_table.h"
+#include "model/series.h"
 
 enum { NU = MW_TABLE_U, NY = MW_TABLE_Y, MOST_PATCHES = 4000, MOST_STRIPS = 400, MOST_DEPTH = 9, SERIES = 16, PIECES = 16 };
 static const double pi = 3.14159265358979323846;
@@ -88,17 +89,6 @@ static void series_of(const double *value, int n, double *c)
     }
 }
 
-static double series_at(const double *c, int n, double x)
-{
-    double b1 = 0, b2 = 0;
-    for (int k = n - 1; k > 0; k--) {
-        const double b = 2 * x * b1 - b2 + c[k];
-        b2 = b1;
-        b1 = b;
-    }
-    return c[0] + x * b1 - b2;
-}
-
 static void make_switch(void)
 {
     double value[PIECES];
@@ -112,7 +102,7 @@ static void make_switch(void)
 static double switch_at(double y)
 {
     const double x = fmax(-1, 2 * (y - switch_lo) / (switch_hi - switch_lo) - 1);
-    return series_at(switch_series, PIECES, x);
+    return mw_series_at(switch_series, PIECES, x);
 }
 
 /* u in 0..1 up to the switch, 1..2 beyond it; depth and length take the whole range as 0..2. */
@@ -162,9 +152,9 @@ static double value_of(const patch *p, double fy, double fu)
         double column[NY];
         for (int j = 0; j < NY; j++)
             column[j] = p->c[j][i];
-        row[i] = series_at(column, NY, fy);
+        row[i] = mw_series_at(column, NY, fy);
     }
-    return series_at(row, NU, fu);
+    return mw_series_at(row, NU, fu);
 }
 
 /* Largest relative error at points between the nodes and on the edges. */

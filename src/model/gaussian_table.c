@@ -5,6 +5,7 @@
 #include <math.h>
 
 #include "gaussian_table_data.h" /* generated: src/generate */
+#include "model/series.h"
 #include "model/wide.h"
 
 typedef struct table_set {
@@ -16,17 +17,6 @@ typedef struct table_set {
 #define SET(name) {name##_strip, sizeof name##_strip / sizeof *name##_strip, name##_patch}
 static const table_set set_of[MW_TABLE_QUANTITIES] = {SET(width), SET(depth), SET(length)};
 
-static double series_at(const double *c, int n, double x)
-{
-    double b1 = 0, b2 = 0;
-    for (int k = n - 1; k > 0; k--) {
-        const double b = 2 * x * b1 - b2 + c[k];
-        b2 = b1;
-        b1 = b;
-    }
-    return c[0] + x * b1 - b2;
-}
-
 static double curve_at(const double series[CURVE_PIECES][CURVE_TERMS], double peclet)
 {
     const double y = log(peclet);
@@ -34,7 +24,7 @@ static double curve_at(const double series[CURVE_PIECES][CURVE_TERMS], double pe
         return NAN;
     const double at = CURVE_PIECES * (y - curve_lo) / (curve_hi - curve_lo);
     const int piece = at >= CURVE_PIECES ? CURVE_PIECES - 1 : (int)at;
-    return exp(series_at(series[piece], CURVE_TERMS, 2 * (at - piece) - 1));
+    return exp(mw_series_at(series[piece], CURVE_TERMS, 2 * (at - piece) - 1));
 }
 
 double mw_table_peak(double peclet)
@@ -50,7 +40,7 @@ double mw_table_cylinder(double peclet)
 /* t where the second widest place takes over; level below the Peclet number where there is a second one. */
 static double switch_at(double y)
 {
-    return series_at(switch_series, SWITCH_TERMS, fmax(-1, 2 * (y - switch_lo) / (switch_hi - switch_lo) - 1));
+    return mw_series_at(switch_series, SWITCH_TERMS, fmax(-1, 2 * (y - switch_lo) / (switch_hi - switch_lo) - 1));
 }
 
 /* Powers of u of one patch at height x of its strip, -1..1. */

@@ -5,6 +5,9 @@
 
 #include "meltwright/study.h"
 
+/* How many threads to use: as asked, all cores for 0 or less, one without OpenMP. */
+int mw_threads(int asked);
+
 /* Rising axes with values in reason, and not too many cells. Every axis has at least one value. */
 mw_status mw_grid_check(const mw_grid *grid, mw_error *err);
 /* Leaves only the powers that the wanted cells need; cells are then counted from the first of them. */

@@ -6,10 +6,6 @@
 #include <stdlib.h>
 #include <string.h>
 
-#ifdef _OPENMP
-#include <omp.h>
-#endif
-
 #include "model/keyhole_line.h"
 #include "study/internal.h"
 #include "study/survey_lanes.h"
@@ -285,14 +281,8 @@ mw_status mw_survey(const mw_plan *plan, const mw_grid *grid, const mw_sample *s
         status = mw_grid_cut(&part, err);
     if (status != MW_OK)
         return status;
-    survey v = {.plan = plan, .grid = &part, .sample = sample, .n_sample = n_sample, .n_pairs = grid->n_hatch * grid->n_layer, .threads = threads,
+    survey v = {.plan = plan, .grid = &part, .sample = sample, .n_sample = n_sample, .n_pairs = grid->n_hatch * grid->n_layer, .threads = mw_threads(threads),
                 .limits = mw_verdict_limits(plan->kind)};
-#ifdef _OPENMP
-    if (threads <= 0)
-        v.threads = omp_get_num_procs();
-#endif
-    if (v.threads <= 0)
-        v.threads = 1;
     v.exponent = v.limits->energy_slope / v.limits->overlap_slope;
     v.layer = malloc(grid->n_layer * sizeof *v.layer);
     v.pair = malloc(v.n_pairs * sizeof *v.pair);

@@ -35,6 +35,16 @@ static int thread_number(void)
 #endif
 }
 
+int mw_threads(int asked)
+{
+#ifdef _OPENMP
+    return asked > 0 ? asked : omp_get_num_procs();
+#else
+    (void)asked;
+    return 1;
+#endif
+}
+
 static mw_status check_axis(const char *name, const double *value, size_t n, mw_error *err)
 {
     for (size_t i = 1; i < n; i++)
@@ -255,7 +265,7 @@ static mw_status run_block(sweep *s, mw_result_sink sink, void *to, mw_error *er
 static mw_status run(const mw_plan *plan, const mw_grid *grid, bool with_margins, bool by_table, int threads, mw_result_sink sink, void *to, mw_error *err)
 {
     static const double single_track = NAN, bare_plate = 0;
-    sweep s = {.plan = plan, .grid = *grid, .threads = threads, .margins = with_margins && grid->n_hatch > 0 && grid->n_layer > 0, .by_table = by_table};
+    sweep s = {.plan = plan, .grid = *grid, .threads = mw_threads(threads), .margins = with_margins && grid->n_hatch > 0 && grid->n_layer > 0, .by_table = by_table};
     if (s.grid.n_hatch == 0) {
         s.grid.hatch_m = &single_track;
         s.grid.n_hatch = 1;
@@ -264,12 +274,6 @@ static mw_status run(const mw_plan *plan, const mw_grid *grid, bool with_margins
         s.grid.layer_m = &bare_plate;
         s.grid.n_layer = 1;
     }
-#ifdef _OPENMP
-    if (threads <= 0)
-        s.threads = omp_get_num_procs();
-#endif
-    if (s.threads <= 0)
-        s.threads = 1;
     mw_status status = mw_grid_check(&s.grid, err);
     if (status == MW_OK)
         status = mw_grid_cut(&s.grid, err);

@@ -2,23 +2,8 @@
  * Reads the reference pools. */
 #include "pool_set.h"
 
-#include <math.h>
-#include <string.h>
-
-#include "base/csv.h"
+#include "../csv_cells.h"
 #include "bench.h"
-#include "meltwright/text.h"
-
-static double cell(const mw_csv_reader *r, const char *column)
-{
-    for (size_t i = 0; i < mw_csv_columns(r); i++)
-        if (strcmp(mw_csv_column_name(r, i), column) == 0) {
-            double value;
-            const mw_csv_field_view f = mw_csv_get(r, i);
-            return mw_read_number(f.text, f.n, &value) ? value : NAN;
-        }
-    return NAN;
-}
 
 void pool_set_load(pool_set *out)
 {
@@ -31,15 +16,15 @@ void pool_set_load(pool_set *out)
         bench_stop_on(mw_csv_next(r, &end, &err), &err);
         if (end)
             break;
-        if (!(cell(r, "melt") > 0))
+        if (!(cell_number(r, "melt") > 0))
             continue;
         const size_t i = out->n++;
-        out->source[i] = (mw_source){cell(r, "P_W") * cell(r, "A"), cell(r, "v_m_s"), cell(r, "d4sigma_m") / 4};
-        out->medium[i] = (mw_medium){cell(r, "k_W_mK"), cell(r, "rho_kg_m3") * cell(r, "cp_J_kgK"), cell(r, "T0_K"),
-                                     cell(r, "Tm_K")};
-        out->width_m[i] = cell(r, "width_m");
-        out->depth_m[i] = cell(r, "depth_m");
-        out->length_m[i] = cell(r, "length_m");
+        out->source[i] = (mw_source){cell_number(r, "P_W") * cell_number(r, "A"), cell_number(r, "v_m_s"), cell_number(r, "d4sigma_m") / 4};
+        out->medium[i] = (mw_medium){cell_number(r, "k_W_mK"), cell_number(r, "rho_kg_m3") * cell_number(r, "cp_J_kgK"), cell_number(r, "T0_K"),
+                                     cell_number(r, "Tm_K")};
+        out->width_m[i] = cell_number(r, "width_m");
+        out->depth_m[i] = cell_number(r, "depth_m");
+        out->length_m[i] = cell_number(r, "length_m");
     }
     mw_csv_close(r);
 }

@@ -4,8 +4,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-#include "base/csv.h"
-#include "meltwright/text.h"
+#include "../csv_cells.h"
 #include "stats.h"
 #include "validate.h"
 
@@ -16,26 +15,6 @@ typedef struct cavity_point {
     char mode[40];
     double power_W, speed_m_per_s, d4sigma_m, depth_m, absorptivity;
 } cavity_point;
-
-static const char *text_of(const mw_csv_reader *r, const char *column)
-{
-    for (size_t i = 0; i < mw_csv_columns(r); i++)
-        if (strcmp(mw_csv_column_name(r, i), column) == 0)
-            return mw_csv_get(r, i).text;
-    return "";
-}
-
-static double number_of(const char *text, size_t n)
-{
-    double value;
-    return mw_read_number(text, n, &value) ? value : NAN;
-}
-
-static double cell_of(const mw_csv_reader *r, const char *column)
-{
-    const char *text = text_of(r, column);
-    return number_of(text, strlen(text));
-}
 
 /* Reads a file of points; depth from the note ("keyhole_depth_um=33.0"), where these files keep what is not a melt pool. */
 static size_t load_points(const char *file, cavity_point *out)
@@ -52,13 +31,13 @@ static size_t load_points(const char *file, cavity_point *out)
         stop_on(mw_csv_next(r, &end, &err), &err);
         if (end)
             break;
-        const char *depth = strstr(text_of(r, "note"), key);
-        cavity_point p = {.power_W = cell_of(r, "power_W"), .speed_m_per_s = cell_of(r, "speed_mm_s") / 1e3, .d4sigma_m = cell_of(r, "spot_um") / 1e6,
-                          .depth_m = depth == NULL ? NAN : number_of(depth + sizeof key - 1, strspn(depth + sizeof key - 1, "0123456789.")) / 1e6,
-                          .absorptivity = cell_of(r, "absorptivity")};
-        (void)snprintf(p.alloy, sizeof p.alloy, "%s", text_of(r, "alloy"));
-        (void)snprintf(p.condition, sizeof p.condition, "%s", text_of(r, "condition"));
-        (void)snprintf(p.mode, sizeof p.mode, "%s", text_of(r, "mode"));
+        const char *depth = strstr(cell_text(r, "note"), key);
+        cavity_point p = {.power_W = cell_number(r, "power_W"), .speed_m_per_s = cell_number(r, "speed_mm_s") / 1e3, .d4sigma_m = cell_number(r, "spot_um") / 1e6,
+                          .depth_m = depth == NULL ? NAN : text_number(depth + sizeof key - 1, strspn(depth + sizeof key - 1, "0123456789.")) / 1e6,
+                          .absorptivity = cell_number(r, "absorptivity")};
+        (void)snprintf(p.alloy, sizeof p.alloy, "%s", cell_text(r, "alloy"));
+        (void)snprintf(p.condition, sizeof p.condition, "%s", cell_text(r, "condition"));
+        (void)snprintf(p.mode, sizeof p.mode, "%s", cell_text(r, "mode"));
         if (p.power_W > 0 && p.speed_m_per_s > 0 && p.d4sigma_m > 0)
             out[n++] = p;
     }

@@ -8,8 +8,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-#include "base/csv.h"
-#include "meltwright/text.h"
+#include "../csv_cells.h"
 #include "stats.h"
 
 enum { MOST_STUDIES = 40, MOST_SETTINGS = 120 };
@@ -32,24 +31,9 @@ typedef struct study {
 static study studies[MOST_STUDIES];
 static size_t n_study;
 
-static const char *field(const mw_csv_reader *r, const char *name)
-{
-    for (size_t i = 0; i < mw_csv_columns(r); i++)
-        if (strcmp(mw_csv_column_name(r, i), name) == 0)
-            return mw_csv_get(r, i).text;
-    return "";
-}
-
-static double value(const mw_csv_reader *r, const char *name)
-{
-    double v;
-    const char *t = field(r, name);
-    return mw_read_number(t, strlen(t), &v) ? v : NAN;
-}
-
 static study *study_of(const mw_csv_reader *r)
 {
-    const char *doi = field(r, "doi"), *alloy = field(r, "alloy"), *method = field(r, "method");
+    const char *doi = cell_text(r, "doi"), *alloy = cell_text(r, "alloy"), *method = cell_text(r, "method");
     for (size_t i = 0; i < n_study; i++)
         if (strcmp(studies[i].doi, doi) == 0 && strcmp(studies[i].alloy, alloy) == 0 && strcmp(studies[i].method, method) == 0)
             return &studies[i];
@@ -65,9 +49,9 @@ static study *study_of(const mw_csv_reader *r)
 static void add_cube(study *s, const mw_csv_reader *r)
 {
     char key[96];
-    (void)snprintf(key, sizeof key, "%.16s|%.16s|%.16s|%.16s|%.16s", field(r, "power_W"), field(r, "speed_mm_per_s"), field(r, "d4sigma_um"),
-                   field(r, "layer_um"), field(r, "hatch_um"));
-    const double density = value(r, "relative_density_pct");
+    (void)snprintf(key, sizeof key, "%.16s|%.16s|%.16s|%.16s|%.16s", cell_text(r, "power_W"), cell_text(r, "speed_mm_per_s"), cell_text(r, "d4sigma_um"),
+                   cell_text(r, "layer_um"), cell_text(r, "hatch_um"));
+    const double density = cell_number(r, "relative_density_pct");
     for (size_t i = 0; i < s->n; i++)
         if (strcmp(s->cube[i].key, key) == 0) {
             s->cube[i].density = (s->cube[i].density * s->cube[i].n + density) / (s->cube[i].n + 1);
@@ -87,8 +71,8 @@ static void add_cube(study *s, const mw_csv_reader *r)
     mw_result result;
     mw_error err;
     stop_on(mw_plan_make(alloy, MW_MODEL_DEFAULT, NULL, 293.15, &plan, &err), &err);
-    const mw_setting setting = {value(r, "power_W"), value(r, "speed_mm_per_s") / 1e3, value(r, "hatch_um") / 1e6, value(r, "layer_um") / 1e6,
-                                value(r, "d4sigma_um") / 1e6, 293.15};
+    const mw_setting setting = {cell_number(r, "power_W"), cell_number(r, "speed_mm_per_s") / 1e3, cell_number(r, "hatch_um") / 1e6, cell_number(r, "layer_um") / 1e6,
+                                cell_number(r, "d4sigma_um") / 1e6, 293.15};
     if (mw_evaluate(&plan, &setting, false, &result, &err) < 0)
         stop_on(err.status, &err);
     c->overlap = fmin(result.overlap_index, MW_OVERLAP_NO_POOL);

@@ -5,8 +5,7 @@
 #include <math.h>
 #include <string.h>
 
-#include "base/csv.h"
-#include "meltwright/text.h"
+#include "../csv_cells.h"
 #include "validate.h"
 
 const data_set track_sets[TRACK_SETS] = {
@@ -25,29 +24,10 @@ const data_set track_sets[TRACK_SETS] = {
     {"Ghosh 2018, 625, bare", "", "ghosh2018_IN625", "625", "bare", NULL, NULL, NAN, 100, "not stated: 100 um"},
 };
 
-static double cell(const mw_csv_reader *r, const char *column)
-{
-    for (size_t i = 0; i < mw_csv_columns(r); i++)
-        if (strcmp(mw_csv_column_name(r, i), column) == 0) {
-            double value;
-            const mw_csv_field_view f = mw_csv_get(r, i);
-            return mw_read_number(f.text, f.n, &value) ? value : NAN;
-        }
-    return NAN;
-}
-
-static const char *text(const mw_csv_reader *r, const char *column)
-{
-    for (size_t i = 0; i < mw_csv_columns(r); i++)
-        if (strcmp(mw_csv_column_name(r, i), column) == 0)
-            return mw_csv_get(r, i).text;
-    return "";
-}
-
 static bool wanted(const data_set *s, const mw_csv_reader *r, double layer_um)
 {
-    const char *note = text(r, "note");
-    return (s->condition == NULL || strcmp(text(r, "condition"), s->condition) == 0) && (s->need == NULL || strstr(note, s->need) != NULL) &&
+    const char *note = cell_text(r, "note");
+    return (s->condition == NULL || strcmp(cell_text(r, "condition"), s->condition) == 0) && (s->need == NULL || strstr(note, s->need) != NULL) &&
            (s->avoid == NULL || strstr(note, s->avoid) == NULL) && (isnan(s->layer_um) || layer_um == s->layer_um);
 }
 
@@ -64,10 +44,10 @@ void load_track_set(const data_set *s, track_rows *out)
         stop_on(mw_csv_next(r, &end, &err), &err);
         if (end)
             break;
-        const double layer_um = isnan(cell(r, "layer_um")) ? 0 : cell(r, "layer_um");
-        const double beam_um = isnan(cell(r, "spot_um")) ? s->beam_um : cell(r, "spot_um");
-        const track_row row = {cell(r, "power_W"), cell(r, "speed_mm_s") * 1e-3, beam_um * 1e-6, layer_um * 1e-6,
-                               cell(r, "width_um") * 1e-6, cell(r, "depth_um") * 1e-6, cell(r, "length_um") * 1e-6};
+        const double layer_um = isnan(cell_number(r, "layer_um")) ? 0 : cell_number(r, "layer_um");
+        const double beam_um = isnan(cell_number(r, "spot_um")) ? s->beam_um : cell_number(r, "spot_um");
+        const track_row row = {cell_number(r, "power_W"), cell_number(r, "speed_mm_s") * 1e-3, beam_um * 1e-6, layer_um * 1e-6,
+                               cell_number(r, "width_um") * 1e-6, cell_number(r, "depth_um") * 1e-6, cell_number(r, "length_um") * 1e-6};
         if (wanted(s, r, layer_um) && !(isnan(row.width_m) && isnan(row.depth_m)) && row.speed_m_per_s > 0)
             out->row[out->n++] = row;
     }
