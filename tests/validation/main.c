@@ -37,6 +37,7 @@ int main(int argc, char **argv)
     validate_tracks(argc > 1 ? argv[1] : NULL);
     validate_cavity();
     validate_contest();
+    validate_repeats();
     validate_slopes();
     validate_cubes();
     validate_balling();

@@ -13,6 +13,7 @@ void validate_cubes(void);
 void validate_balling(void);
 void validate_contest(void);
 void validate_slopes(void);
+void validate_repeats(void);
 void validate_cavity(void);
 
 /* Prints the error and ends the program unless the status is a success. */
