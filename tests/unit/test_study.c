@@ -222,6 +222,22 @@ static void doubt_about_the_beam_widens_the_intervals(void **state)
     assert_true(before_d / depth > before_w / width); /* depth goes as one over the beam, width hardly */
 }
 
+/* What a card estimates with a large uncertainty shows in the intervals: the same pool under a doubtful conductivity or heat capacity. */
+static void doubt_in_the_card_widens_the_intervals(void **state)
+{
+    (void)state;
+    const mw_plan plan = plan_for(MW_MODEL_DEFAULT);
+    const mw_setting s = {120, 0.8, 1e-4, 3e-5, 8e-5, 293.15};
+    static const mw_property_id doubtful[] = {MW_PROP_COUPLING, MW_PROP_CONDUCTIVITY_SOLID, MW_PROP_HEAT_SOLID};
+    for (size_t i = 0; i < 3; i++) {
+        mw_alloy other = *plan.alloy;
+        mw_plan unsure = plan;
+        other.property[doubtful[i]].uncertainty_pct = 30;
+        unsure.alloy = &other;
+        assert_true(spread(&unsure, &s, true) > 1.001 * spread(&plan, &s, true) && spread(&unsure, &s, false) > 1.0001 * spread(&plan, &s, false));
+    }
+}
+
 /* Every alloy that is shipped gives pools at every preheat its card allows, hotter plates larger ones. */
 static void every_shipped_alloy_gives_pools(void **state)
 {
@@ -539,6 +555,7 @@ int main(void)
         cmocka_unit_test(outside_the_record_is_named_and_flagged),
         cmocka_unit_test(intervals_hold_the_prediction_and_keep_their_order),
         cmocka_unit_test(doubt_about_the_beam_widens_the_intervals),
+        cmocka_unit_test(doubt_in_the_card_widens_the_intervals),
         cmocka_unit_test(every_shipped_alloy_gives_pools),
         cmocka_unit_test(margins_are_where_the_verdict_flips),
         cmocka_unit_test(margins_of_what_is_not_nominal_are_zero),
