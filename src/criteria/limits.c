@@ -3,7 +3,7 @@
 #include "meltwright/criteria.h"
 
 #define CUBES                                                                                                          \
-    "density of 564 cube settings in 31 studies collected by G.O. Barrionuevo et al., Sci. Data 12 (2025) 375; "       \
+    "density of cubes in the studies collected by G.O. Barrionuevo et al., Sci. Data 12 (2025) 375 (tests/data/measured), without copper; "       \
     "'nominal' = within 1 point of the densest cube of the same study"
 
 const mw_limits *mw_verdict_limits(mw_pool_kind kind)

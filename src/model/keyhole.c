@@ -12,18 +12,18 @@
 
 /* Set by hand with published cross-sections of single tracks in view (316L, 625, 718, Ti-6Al-4V; seven papers, about
  * 300 tracks, spots 37 to 140 um, from 0.1 m/s, plate at room temperature). The one fitted number, the coupling
- * A0 = 0.40, stands in the alloy cards; the same 0.40 to 0.42 comes out with any paper left out. `make validate` shows what each
- * constant and other forms do on papers left out. Onset, shape and blend are flat: not worth fitting again.
+ * A0 = 0.40, stands in the alloy cards; the same 0.40 to 0.42 comes out with any paper left out; the constants below never
+ * were. `make validate` shows what each of them and other forms do.
  *   onset_ratio     from regime data: where absorption takes off in 316L, where a depression shows in Ti-6Al-4V. The
  *                   computed rise is 2.7 times the boiling rise there, presumably as vapour and flow cool it.
  *                   Metals that conduct well seem to need less (1.2 for Al, 1.5 for W; untested on cross-sections)
  *   cavity_shape    opening over wall area is 1/(1 + c x): 2 for a cone, 4 for a cylinder with a bottom
  *   gate_exponent   the cavity is half open 4 percent above the onset. A slow gate (4) makes beams known from measurement 20 to 37
- *                   percent too shallow just above the onset; none at all (a jump) does no better
+ *                   percent too shallow just above the onset; none at all has a slightly smaller loss but jumps
  *   blend_exponent  lets the deeper of conduction pool and cavity win, without a kink
  *   layer_factor    weak: freed in a fit it returns 0.4 to 1.2
  *   flow_widening   melt flow carries heat outward, so a real pool is a little wider and shallower
- *                   than the computed one. Some fifty other forms with up to five more constants did no better on papers left out */
+ *                   than the computed one. Chosen on the widths of these papers; no other source */
 const mw_keyhole_constants mw_keyhole_defaults = {
     .onset_ratio = 2.7,
     .cavity_shape = 3,

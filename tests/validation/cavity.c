@@ -140,7 +140,7 @@ static void disc_absorptivity(const char *in_file, const char *card)
 
 void validate_cavity(void)
 {
-    (void)printf("\nThe cavity itself, nothing of this used in a fit\n");
+    (void)printf("\nThe cavity itself. Where it opens was used to choose the onset ratios (316L, Ti-6Al-4V, W); its depth was used for nothing\n");
     depression_line();
     imaged_depth();
     disc_absorptivity("316L", "316L");

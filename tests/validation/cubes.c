@@ -314,5 +314,5 @@ void validate_cubes(void)
                  whole.overlap_half, whole.overlap_slope, whole.energy_half, whole.energy_slope, lo.overlap_half, hi.overlap_half, lo.overlap_slope,
                  hi.overlap_slope, lo.energy_half, hi.energy_half, lo.energy_slope, hi.energy_slope);
     print_bins("Stated against observed, as shipped (copper left out)", &as_shipped);
-    print_bins("Stated against observed, constants fitted to the other studies", &as_left_out);
+    print_bins("Stated against observed, constants fitted to the other studies (copper left out)", &as_left_out);
 }
